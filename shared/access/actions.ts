@@ -13,7 +13,8 @@ export type InstallationRole = typeof INSTALLATION_ROLES[number]
 export type Exposure = 'cleared' | 'unexposed' | 'any'
 
 interface Rule {
-  readonly roles: readonly (StudyRole | InstallationRole)[]
+  /** Who may act; `signed-in` is everybody with an account, whatever they hold. */
+  readonly roles: readonly (StudyRole | InstallationRole)[] | 'signed-in'
   readonly exposure: Exposure
   /** Signed with identifier and password again. */
   readonly signed?: true
@@ -35,7 +36,7 @@ export const ACTIONS = {
   'members.manage': { roles: ['administrator'], exposure: 'any' },
   'clearance.grant': { roles: ['administrator'], exposure: 'any' },
 
-  'own.read': { roles: ['administrator', ...everyMember], exposure: 'any' },
+  'own.read': { roles: 'signed-in', exposure: 'any' },
   'study.read': { roles: [...everyMember], exposure: 'any' },
   'members.read': { roles: ['administrator', ...everyMember], exposure: 'any' },
   'clearance.propose': { roles: statistician, exposure: 'any' },
@@ -93,11 +94,21 @@ export interface Standing {
 
 export type Refusal = 'not-permitted' | 'exposed'
 
+function holdsRole(roles: Rule['roles'], { studyRoles, installationRole }: Standing): boolean {
+  if (roles === 'signed-in') return true
+  const held: readonly string[] = [...studyRoles, ...(installationRole ? [installationRole] : [])]
+  return roles.some(role => held.includes(role))
+}
+
+/** Whether an action of a study is open to administrators, who hold no membership of it. */
+export const opensToAdministrators = (action: Action): boolean => holdsRole(ACTIONS[action].roles, {
+  installationRole: 'administrator', studyRoles: [], cleared: false, exposed: false, blindHolds: false,
+})
+
 /** `null` when the action is open to this standing, else why not. */
 export function refusal(action: Action, standing: Standing): Refusal | null {
   const rule: Rule = ACTIONS[action]
-  const roles: readonly string[] = [...standing.studyRoles, ...(standing.installationRole ? [standing.installationRole] : [])]
-  if (!rule.roles.some(role => roles.includes(role))) return 'not-permitted'
+  if (!holdsRole(rule.roles, standing)) return 'not-permitted'
   if (rule.exposure === 'cleared' && !standing.cleared) return 'not-permitted'
   if (rule.exposure === 'unexposed' && standing.blindHolds && (standing.exposed || standing.cleared)) return 'exposed'
   return null

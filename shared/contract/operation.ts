@@ -45,6 +45,13 @@ export type QueryOf<O> = O extends Operation<infer _P, infer Q, infer _B, infer 
 export type BodyOf<O> = O extends Operation<infer _P, infer _Q, infer B, infer _A> ? ValueOf<B> : never
 export type AnswerOf<O> = O extends Operation<infer _P, infer _Q, infer _B, infer A> ? ValueOf<A> : never
 
+type InputOfShape<S> = S extends z.ZodTypeAny ? z.input<S> : undefined
+
+/** What a client sends: before defaults are filled in and without the brands of identifiers. */
+export type ParamsInputOf<O> = O extends Operation<infer P, infer _Q, infer _B, infer _A> ? InputOfShape<P> : never
+export type QueryInputOf<O> = O extends Operation<infer _P, infer Q, infer _B, infer _A> ? InputOfShape<Q> : never
+export type BodyInputOf<O> = O extends Operation<infer _P, infer _Q, infer B, infer _A> ? InputOfShape<B> : never
+
 export const isMedia = (shape: Shape): shape is Media => shape !== null && 'media' in shape
 
 /** Keeps the literal types of a declaration. */

@@ -1,11 +1,12 @@
 import { z } from 'zod'
+import { studyId } from '../schemas/ids'
 
 export const uuid = z.string().uuid()
 /** ISO 8601, UTC, milliseconds. */
 export const momentText = z.string().datetime({ precision: 3 })
 export const hashText = z.string().regex(/^[0-9a-f]{64}$/)
 
-export const studyParams = z.strictObject({ studyId: uuid })
+export const studyParams = z.strictObject({ studyId })
 
 /** Identifier and password again, at every signing; the reason where the act asks for one. */
 export const credentials = z.strictObject({
