@@ -96,7 +96,7 @@ export const memoSummary = z.strictObject({
   number: z.number().int(),
   deviation: z.strictObject({ id: uuid, number: z.number().int() }),
   analysis: z.string(),
-  edition: z.enum(['blinded', 'cleared']),
+  edition: z.enum(['blinded', 'cleared', 'open-label']),
   deviationClass: z.enum(DEVIATION_CLASSES),
   binding: z.boolean(),
   state: z.enum(['awaiting-signature', 'rendering', 'issued', 'failed']),

@@ -69,16 +69,18 @@ export const settlement = pgTable('settlement', {
   secondAt: moment('second_at'),
   at: createdAt(),
 }, t => [
+  unique().on(t.studyId, t.id),
   foreignKey({ columns: [t.studyId, t.deviationId], foreignColumns: [deviation.studyId, deviation.id] }),
 ])
 
-/** `content` is what is signed (canonical JSON); the PDF is made from it by a worker. */
+/** One per settlement. `content` is what is signed (canonical JSON); the PDF is made from it by a worker. */
 export const memo = pgTable('memo', {
   id: id().$type<MemoId>(),
   studyId: uuid('study_id').$type<StudyId>().notNull(),
   number: integer('number').notNull(),
   deviationId: uuid('deviation_id').$type<DeviationId>().notNull(),
-  edition: text('edition', { enum: ['blinded', 'cleared'] }).notNull(),
+  settlementId: uuid('settlement_id').notNull(),
+  edition: text('edition', { enum: ['blinded', 'cleared', 'open-label'] }).notNull(),
   deviationClass: text('deviation_class', { enum: ['foreseen-switch', 'departure', 'unresolved'] }).notNull(),
   binding: boolean('binding').notNull(),
   state: text('state', { enum: ['awaiting-signature', 'rendering', 'issued', 'failed'] }).notNull(),
@@ -92,5 +94,7 @@ export const memo = pgTable('memo', {
 }, t => [
   unique().on(t.studyId, t.id),
   unique().on(t.studyId, t.number),
+  unique().on(t.settlementId),
   foreignKey({ columns: [t.studyId, t.deviationId], foreignColumns: [deviation.studyId, deviation.id] }),
+  foreignKey({ columns: [t.studyId, t.settlementId], foreignColumns: [settlement.studyId, settlement.id] }),
 ])
