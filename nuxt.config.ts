@@ -1,5 +1,6 @@
 import { cpSync, readdirSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
+import { requireContract } from './scripts/build/contract-check'
 import { workerEntries } from './scripts/build/worker-entries'
 
 const path = (relative: string) => fileURLToPath(new URL(relative, import.meta.url))
@@ -102,6 +103,9 @@ export default defineNuxtConfig({
       })],
     },
     hooks: {
+      'rollup:before'(nitro) {
+        requireContract(nitro)
+      },
       compiled(nitro) {
         if (!nitro.options.dev) copyRuntimeFiles(nitro.options.output.serverDir)
       },

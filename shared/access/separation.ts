@@ -1,6 +1,6 @@
 /** What somebody may have done before that forbids them a duty now. */
-export type EarlierDuty =
-  | 'plan.author' | 'extract.upload' | 'deviation.settle' | 'release.sign' | 'overrule.first' | 'clearance.propose' | 'clearance.hold'
+export type EarlierDuty
+  = | 'plan.author' | 'extract.upload' | 'deviation.settle' | 'release.sign' | 'overrule.first' | 'clearance.propose' | 'clearance.hold'
 
 /**
  * Duties that may not lie in one hand, on top of the role × action table: for each duty, what whoever takes it

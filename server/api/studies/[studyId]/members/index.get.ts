@@ -1,0 +1,5 @@
+import { listMembersOperation } from '#shared/contract/members'
+import { listMembers } from '../../../../services/members'
+
+export default defineApiHandler(listMembersOperation, ({ params, db }) =>
+  listMembers(db, params))
