@@ -1,4 +1,4 @@
-import type { AnalysisVerdict, FallbackMethod, PlannedMethod, PrerequisiteKind, PrerequisiteVerdict, Quantity, Reason, ScreenKind, SeenVerdict, SummaryMeasure } from '../plan/terms'
+import type { AnalysisVerdict, FallbackMethod, PlannedMethod, PrerequisiteKind, PrerequisiteVerdict, Quantity, Reason, ScreenKind, SeenVerdict, StandingScreen, SummaryMeasure } from '../plan/terms'
 
 /**
  * The one report: everything that the judge found, in full precision. Plain data, RFC 8785 ready: no NaN, no
@@ -20,7 +20,8 @@ export interface ExtractIdentity {
   readonly bytesHash: string
   /** SHA-256 of the mapped arm-free content, sorted by key, hex: row order alone makes no new extract. */
   readonly contentHash: string
-  readonly cutOff: string
+  /** Null only outside the ledger. */
+  readonly cutOff: string | null
   readonly purpose: 'interim' | 'database-lock'
   /** Which look it is; null when unscheduled, at the decision point, or outside the ledger. */
   readonly look: string | null
@@ -30,7 +31,7 @@ export interface ExtractIdentity {
 
 export interface ScreenReport {
   readonly screen: string
-  readonly kind: ScreenKind
+  readonly kind: ScreenKind | StandingScreen
   readonly action: 'hold' | 'warn'
   readonly endpoint: string
   /** Rows it touches (source row numbers, at most 200 kept) and how many there are in all. */
@@ -43,7 +44,7 @@ export interface ScreenReport {
 export interface SelectionReport {
   readonly rows: number
   readonly kept: number
-  readonly dropped: readonly { readonly reason: 'other-parameter' | 'other-visit' | 'not-in-set' | 'not-flagged' | 'no-value' | 'no-baseline' | 'zero-baseline', readonly count: number }[]
+  readonly dropped: readonly { readonly reason: 'other-parameter' | 'other-visit' | 'not-in-set' | 'not-flagged' | 'no-value' | 'no-baseline' | 'zero-baseline' | 'other-occasion-missing', readonly count: number }[]
   readonly imputed: number
   /** Subjects who should have a value, and those who have a usable one, over all arms. */
   readonly expected: number
@@ -87,6 +88,7 @@ export interface PrerequisiteReport {
   readonly consequence: 'switch' | 'hold' | 'reported-only' | 'required'
   readonly dependsOnArms: boolean
   readonly verdict: PrerequisiteVerdict
+  /** Why it is not assessable; beside `met` or `not-met`: the reason for which the plan registers that other reading. */
   readonly reason: Reason | null
   /** One member per judged sample: per arm, or one for a pooled or arm-free quantity. */
   readonly samples: readonly SampleReport[]
@@ -147,8 +149,17 @@ export interface ArmReport {
   readonly excessKurtosis: number | null
 }
 
-/** Already reduced: histogram bins and at most 400 quantile points with a pointwise 95 % band. */
+/** What a plot shows. No plot shows a location: every quantity is centred, within subject and between arms. */
+export const PLOTTED = ['residuals', 'residuals-by-own-sd', 'values-about-arm-medians', 'differences-about-median', 'values-about-median'] as const
+export type Plotted = typeof PLOTTED[number]
+
+/**
+ * Already reduced: histogram bins and at most 400 quantile points with a pointwise 95 % band, to six
+ * significant digits.
+ */
 export interface PlotData {
+  readonly quantity: Plotted
+  /** Unit of the quantity; `1` where it has none. */
   readonly unit: string
   readonly edges: readonly number[]
   readonly counts: readonly number[]

@@ -35,6 +35,10 @@ export type Consequence = typeof CONSEQUENCES[number]
 export const SCREEN_KINDS = ['impossible-value', 'duplicate-key', 'implausible-value'] as const
 export type ScreenKind = typeof SCREEN_KINDS[number]
 
+/** Screens that no plan registers because none may do without them; they always hold, under their kind as id. */
+export const STANDING_SCREENS = ['wrong-unit', 'unknown-visit'] as const
+export type StandingScreen = typeof STANDING_SCREENS[number]
+
 /** Why something is not assessable (closed list). */
 export const REASONS = [
   'too-few-data', 'procedure-undefined', 'check-too-weak', 'allocation-withheld', 'data-query-open',
