@@ -6,6 +6,7 @@ import { quantilePlot } from '#shared/figures/quantilePlot'
 import { toSvg } from '#shared/figures/toSvg'
 
 const plot: PlotData = {
+  quantity: 'residuals',
   unit: 'mg/L',
   edges: [-2, -1, 0, 1, 2],
   counts: [2, 8, 8, 2],
