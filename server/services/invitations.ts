@@ -7,7 +7,7 @@ import { newId } from '../database/newId'
 import { onlyRow } from '../database/onlyRow'
 import { invitation, person } from '../database/schema/person'
 import { DomainError } from '../domainError'
-import { countAttempt } from './attempts'
+import { countAttempt, forgiveAttempt } from './attempts'
 import { invitationLink, readInvitationToken } from './invitationToken'
 import { hashPassword } from './passwords'
 import { appendRecord } from './record'
@@ -48,9 +48,11 @@ async function hasAdministrator(db: Queryable): Promise<boolean> {
 
 /** The invitation that a token stands for, before anything costly is done. */
 async function readToken(db: Database, { token, request }: { token: string, request: RequestFacts }): Promise<InvitationId> {
-  await countAttempt(db, { kind: 'invitation', account: token, origin: request.origin })
+  const attempt = { kind: 'invitation', account: token, origin: request.origin } as const
+  await countAttempt(db, attempt)
   const id = readInvitationToken(config().secrets.authSecret, token)
   if (!id) throw new DomainError('not-found')
+  await forgiveAttempt(db, attempt)
   return id
 }
 

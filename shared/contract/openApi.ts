@@ -1,8 +1,10 @@
-import { OpenAPIRegistry, OpenApiGeneratorV31, type ResponseConfig, type RouteConfig } from '@asteasolutions/zod-to-openapi'
+import { extendZodWithOpenApi, OpenAPIRegistry, OpenApiGeneratorV31, type ResponseConfig, type RouteConfig } from '@asteasolutions/zod-to-openapi'
 import { z } from 'zod'
 import { operations } from './index'
 import { isMedia, type Operation, type Shape } from './operation'
 import { PROBLEMS, type ProblemCode } from './problems'
+
+extendZodWithOpenApi(z) // the generator describes path and query parameters through the method that this adds
 
 type Content = NonNullable<ResponseConfig['content']>
 type Answers = Record<number, ResponseConfig>
