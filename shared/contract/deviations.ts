@@ -1,9 +1,11 @@
 import { z } from 'zod'
+import type { MemoContent } from '../memo/content'
+import { deviationId, memoId } from '../schemas/domainIds'
 import { seenVerdict } from './ledger'
 import { defineOperation } from './operation'
 import { credentials, EXAMPLE, hashText, momentText, personView, reasonText, signatureView, studyParams, uuid } from './parts'
 
-const deviationParams = studyParams.extend({ deviationId: uuid })
+const deviationParams = studyParams.extend({ deviationId })
 
 export const DEVIATION_CLASSES = ['foreseen-switch', 'departure', 'unresolved'] as const
 export const SETTLEMENTS = ['accept-step', 'keep-under-observation', 'amend-plan', 'report-without-claim', 'overrule'] as const
@@ -89,7 +91,7 @@ export const secondSettlementOperation = defineOperation({
   params: deviationParams, query: null, body: credentials, answer: deviationView, errors, example: { ...example, body: signed },
 })
 
-const memoParams = studyParams.extend({ memoId: uuid })
+const memoParams = studyParams.extend({ memoId })
 
 export const memoSummary = z.strictObject({
   id: uuid,
@@ -112,10 +114,19 @@ export const listMemosOperation = defineOperation({
   params: studyParams, query: null, body: null, answer: z.strictObject({ memos: z.array(memoSummary) }), errors: [], example: { params: { studyId: EXAMPLE.id } },
 })
 
+const memoContent = z.custom<MemoContent>(value => typeof value === 'object' && value !== null && 'format' in value)
+
+/** What will be signed, or was: the content as it stands now, with the hash to be signed. */
+export const readMemoOperation = defineOperation({
+  id: 'memos.read', method: 'GET', path: '/api/studies/[studyId]/memos/[memoId]', action: 'memo.read', scope: 'study',
+  params: memoParams, query: null, body: null, answer: memoSummary.extend({ content: memoContent, acknowledgementAwaited: z.boolean() }), errors: [],
+  example: { params: { studyId: EXAMPLE.id, memoId: EXAMPLE.id } },
+})
+
 /** The content that is signed; the PDF is made from it and from the signature by a worker. */
 export const signMemoOperation = defineOperation({
   id: 'memos.sign', method: 'POST', path: '/api/studies/[studyId]/memos/[memoId]/signature', action: 'memo.sign', scope: 'study',
-  params: memoParams, query: null, body: credentials.extend({ contentHash: hashText }), answer: memoSummary, errors,
+  params: memoParams, query: null, body: credentials.extend({ contentHash: hashText }), answer: memoSummary, errors: [...errors, 'revision-changed'],
   example: { params: { studyId: EXAMPLE.id, memoId: EXAMPLE.id }, body: { ...signed, contentHash: EXAMPLE.hash } },
 })
 

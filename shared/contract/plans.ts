@@ -1,9 +1,10 @@
 import { z } from 'zod'
 import { planSchema } from '../plan/schema'
+import { planId } from '../schemas/domainIds'
 import { defineOperation } from './operation'
 import { credentials, EXAMPLE, hashText, momentText, personView, reasonText, signatureView, studyParams, uuid } from './parts'
 
-const planParams = studyParams.extend({ planId: uuid })
+const planParams = studyParams.extend({ planId })
 
 const issue = z.strictObject({
   pointer: z.string(),
@@ -18,7 +19,7 @@ export const declaration = z.strictObject({
 })
 
 const knowledge = z.strictObject({
-  /** Extracts received, arm-dependent verdicts released, and deviations open when the amendment was signed. */
+  /** Extracts received, verdicts released, and deviations open when the amendment was signed. */
   extractsReceived: z.number().int(),
   verdictsReleased: z.number().int(),
   deviationsOpen: z.number().int(),

@@ -19,6 +19,8 @@ export const plan = pgTable('plan', {
   hash: text('hash'),
   amendsId: uuid('amends_id').$type<PlanId>(),
   amendmentReason: text('amendment_reason'),
+  /** Everybody who made or saved this version; none of them may review it. */
+  contributors: jsonb('contributors').$type<PersonId[]>().notNull(),
   authorId: uuid('author_id').$type<PersonId>().notNull().references(() => person.id),
   declaration: jsonb('declaration').$type<{ firstSubjectIn: string | null, dataSeen: 'none' | 'pooled' | 'by-arm' }>(),
   /** What had been received, released and seen when an amendment was signed. */

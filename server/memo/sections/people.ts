@@ -1,0 +1,36 @@
+import type { Content } from 'pdfmake/interfaces'
+import type { MemoContent } from '../../../shared/memo/content'
+import { facts, heading, paragraph, signatureRows } from '../blocks'
+import { momentWords, type Say } from '../words'
+
+const spaced = (content: Content): Content => ({ stack: [content], margin: [0, 5, 0, 0] })
+
+/** That the investigator was told, and what came back: informed, declined, awaited or outstanding. */
+export function informedSection({ acknowledgement }: MemoContent, say: Say): Content[] {
+  const { state, dueAt, asked, comment, signature } = acknowledgement
+  return [
+    heading(say('memo.heading.informed')),
+    facts([
+      [say('memo.fact.asked'), asked.length === 0 ? say('memo.acknowledgement.nobody') : asked.join(', ')],
+      [say('memo.fact.due'), momentWords(dueAt, say)],
+      [say('memo.fact.answer'), { text: say(`deviation.acknowledgement.${state}`), bold: true }],
+      ...(comment === null ? [] : [[say('memo.fact.comment'), comment] as const]),
+    ]),
+    paragraph(say('memo.acknowledgement.meaning')),
+    ...(signature === null ? [] : [spaced(signatureRows([signature], say))]),
+  ]
+}
+
+/** What was decided about it, why, and by whom. */
+export function settlementSection({ settlement }: MemoContent, say: Say): Content[] {
+  const { kind, note, signature, second } = settlement
+  return [
+    heading(say('memo.heading.settlement')),
+    facts([
+      [say('memo.fact.settlement'), { text: say(`deviation.settlement.${kind}`), bold: true }],
+      [say('memo.fact.note'), note],
+    ]),
+    paragraph(say(`memo.settlement.${kind}`)),
+    spaced(signatureRows(second === null ? [signature] : [signature, second], say)),
+  ]
+}
