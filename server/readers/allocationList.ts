@@ -1,3 +1,4 @@
+import type { Allocation } from '../../shared/decision/columns'
 import type { Plan } from '../../shared/plan/schema'
 import { openCsv, type CsvFile, type CsvRow } from './csv'
 import { FindingList, quoted, UnreadableFile, type FindingSummary } from './findings'
@@ -130,3 +131,7 @@ export async function readAllocation(source: AsyncIterable<Uint8Array>, plan: Pl
     return { subjects: [], findings: { list: [error.finding], counts: { refuse: 1, hold: 0, warn: 0 } } }
   }
 }
+
+/** The planned arm by subject: what the judge joins to an extract. Only own keys are looked up. */
+export const plannedArms = (subjects: readonly AllocatedSubject[]): Allocation =>
+  Object.fromEntries(subjects.map(({ subject, planned }) => [subject, planned]))

@@ -79,12 +79,34 @@ async function* recordsOf(text: AsyncIterable<string>, delimiter: Delimiter): As
     max_record_size: LONGEST_RECORD,
     info: true,
   })
-  pipeline(Readable.from(text), parser, () => {}) // a failure reaches whoever reads the parser
+  const source = new UpToFault(text)
+  pipeline(Readable.from(source), parser, () => {}) // a failure reaches whoever reads the parser
   try {
     for await (const { record, info } of parser as AsyncIterable<ParsedRecord>) yield { row: rowOf(info), cells: record }
   }
   catch (error) {
-    throw asUnreadable(error)
+    throw source.fault ?? asUnreadable(error)
+  }
+  if (source.fault) throw source.fault
+}
+
+/** A text that ends where it cannot be read on: a failing stream would throw away the rows before the fault. */
+class UpToFault implements AsyncIterable<string> {
+  fault: UnreadableFile | null = null
+  readonly #text: AsyncIterable<string>
+
+  constructor(text: AsyncIterable<string>) {
+    this.#text = text
+  }
+
+  async* [Symbol.asyncIterator](): AsyncGenerator<string> {
+    try {
+      yield* this.#text
+    }
+    catch (error) {
+      if (!(error instanceof UnreadableFile)) throw error
+      this.fault = error
+    }
   }
 }
 

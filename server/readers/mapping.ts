@@ -112,18 +112,17 @@ function stillThere(remembered: ColumnMapping, find: Find): SuggestedMapping {
 
 /** Whether a suggestion leaves nothing for a person to decide, and the mapping that it makes. */
 export function completeMapping(plan: Plan, suggested: SuggestedMapping): ColumnMapping | null {
-  const needs = columnNeeds(plan)
   const { subject, value, flags = {}, parameter = null, visit = null, baseline = null, unit = null, arm = null } = suggested
-  const open = missingRoles(needs, suggested)
-  if (subject === undefined || value === undefined || unit === null || open.length > 0) return null
+  if (subject === undefined || value === undefined || unit === null || missingRoles(plan, suggested).length > 0) return null
   return {
     subject, value, parameter, visit, baseline, unit, arm, flags,
     site: suggested.site ?? null, imputed: suggested.imputed ?? null,
   }
 }
 
-/** Roles without which nothing can be judged, by the name under which ADaM files carry them. */
-function missingRoles(needs: ColumnNeeds, { subject, value, parameter, visit, baseline, arm, flags = {} }: SuggestedMapping): string[] {
+/** What a mapping still lacks of that without which nothing can be judged, by the names that ADaM files have for it. */
+export function missingRoles(plan: Plan, { subject, value, parameter, visit, baseline, arm, flags = {} }: SuggestedMapping): string[] {
+  const needs = columnNeeds(plan)
   const missing = [
     ...(subject ? [] : ['USUBJID']),
     ...(needs.parameter && !parameter ? ['PARAMCD'] : []),
@@ -147,7 +146,7 @@ export function headerFaults(plan: Plan, header: readonly string[], suggested: S
   const upper = header.map(name => name.toUpperCase())
   if (ADAM_CORE.filter(name => upper.includes(name)).length < 3) return []
   const times = (name: string) => header.filter(column => column === name).length
-  return missingRoles(columnNeeds(plan), suggested)
+  return missingRoles(plan, suggested)
     .filter(name => name !== 'TRT01P') // which arm column counts is asked for
     .map(name => times(name) > 1
       ? { code: 'column-repeated', column: name }

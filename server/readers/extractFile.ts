@@ -1,0 +1,126 @@
+import type { ColumnMapping, Finding } from '../../shared/contract/extracts'
+import type { ExtractColumns } from '../../shared/decision/columns'
+import type { Plan } from '../../shared/plan/schema'
+import { ColumnsBuilder } from './columns'
+import { openCsv, type CsvFile, type Delimiter } from './csv'
+import { FindingList, UnreadableFile, type FindingSummary } from './findings'
+import { completeMapping, headerFaults, suggestMapping, type SuggestedMapping } from './mapping'
+
+/** Rows shown before a mapping is confirmed. */
+const PREVIEW_ROWS = 20
+
+export interface FileHead {
+  readonly header: readonly string[]
+  readonly delimiter: Delimiter
+  /** The first rows as they stand, without the header. */
+  readonly preview: readonly (readonly string[])[]
+}
+
+async function firstRows({ rows }: CsvFile): Promise<string[][]> {
+  const taken: string[][] = []
+  try {
+    for await (const { cells } of rows) {
+      taken.push([...cells])
+      if (taken.length === PREVIEW_ROWS) break
+    }
+  }
+  catch (error) {
+    if (!(error instanceof UnreadableFile)) throw error // found again, with its place, when the file is read whole
+  }
+  return taken
+}
+
+async function* only(bytes: Uint8Array): AsyncGenerator<Uint8Array> {
+  yield bytes
+}
+
+/**
+ * Header and first rows from the beginning of a file.
+ *
+ * @param bytes the beginning; a line that is cut off at its end is left out when `whole` is false.
+ * @returns null when not even the header can be read; reading the whole file says why.
+ */
+export async function readHead(bytes: Uint8Array, whole: boolean): Promise<FileHead | null> {
+  const lines = whole ? bytes : bytes.subarray(0, bytes.lastIndexOf(0x0A) + 1)
+  try {
+    const file = await openCsv(only(lines))
+    return { header: file.header, delimiter: file.delimiter, preview: await firstRows(file) }
+  }
+  catch (error) {
+    if (!(error instanceof UnreadableFile)) throw error
+    return null
+  }
+}
+
+export interface MappingProposal {
+  readonly suggested: SuggestedMapping
+  /** The mapping, when nothing is left for a person to decide. */
+  readonly complete: ColumnMapping | null
+  /** Why a file that plainly follows ADaM cannot be mapped at all. */
+  readonly refused: readonly Finding[]
+}
+
+/** What the header and first rows tell about which column is what. */
+export function proposeMapping(plan: Plan, { header, preview }: FileHead, remembered: ColumnMapping | null): MappingProposal {
+  const suggested = suggestMapping(plan, header, preview, remembered)
+  const refused = headerFaults(plan, header, suggested)
+    .map(({ code, column }): Finding => ({ severity: 'refuse', code, row: 1, column, params: {} }))
+  return { suggested, complete: refused.length > 0 ? null : completeMapping(plan, suggested), refused }
+}
+
+export interface ExtractReading {
+  /** Null when the file is refused. */
+  readonly columns: ExtractColumns | null
+  readonly rows: number
+  readonly subjects: number
+  readonly findings: FindingSummary
+}
+
+const refusedUnread = (finding: Finding, soFar?: FindingSummary): FindingSummary => ({
+  list: [finding, ...soFar?.list ?? []],
+  counts: { refuse: (soFar?.counts.refuse ?? 0) + 1, hold: soFar?.counts.hold ?? 0, warn: soFar?.counts.warn ?? 0 },
+})
+
+/**
+ * Reads a CSV extract whole, once it is known which column is what.
+ *
+ * @param mapping a mapping without faults for this file's header (`mappingFaults`).
+ * @returns typed columns, or none with the findings that refuse the file. Every finding names row and column.
+ */
+export async function readCsvExtract(source: AsyncIterable<Uint8Array>, plan: Plan, mapping: ColumnMapping): Promise<ExtractReading> {
+  let builder: ColumnsBuilder | null = null
+  try {
+    const file = await openCsv(source)
+    builder = new ColumnsBuilder(plan, file.header, mapping)
+    noteFormat(file, mapping, builder.findings)
+    for await (const row of file.rows) builder.add(row)
+    return { ...builder.finish(), findings: builder.findings.summary() }
+  }
+  catch (error) {
+    if (!(error instanceof UnreadableFile)) throw error
+    return { columns: null, rows: 0, subjects: 0, findings: refusedUnread(error.finding, builder?.findings.summary()) }
+  }
+}
+
+/** States what was recognised where it is not the plain case. */
+function noteFormat({ delimiter }: CsvFile, { unit }: ColumnMapping, findings: FindingList): void {
+  if (delimiter !== 'comma') findings.add('warn', `separator-${delimiter}`, { row: 1 })
+  if (unit === null) findings.add('warn', 'no-unit-column', { row: 1 })
+}
+
+/**
+ * Reads a file of which not even the header could be made out, to say where it fails.
+ *
+ * @returns the finding, or null when the file can be read after all.
+ */
+export async function findFault(source: AsyncIterable<Uint8Array>): Promise<Finding | null> {
+  try {
+    const { rows } = await openCsv(source)
+    for await (const _ of rows) continue
+    return null
+  }
+  catch (error) {
+    if (!(error instanceof UnreadableFile)) throw error
+    return error.finding
+  }
+}
