@@ -5,6 +5,7 @@ import extract from './en/extract.json'
 import ledger from './en/ledger.json'
 import mail from './en/mail.json'
 import memo from './en/memo.json'
+import pages from './en/pages.json'
 import plan from './en/plan.json'
 import problems from './en/problems.json'
 import record from './en/record.json'
@@ -12,7 +13,7 @@ import verdict from './en/verdict.json'
 
 /** The words of the product by locale; each file is one namespace. */
 export const catalogue = {
-  en: { access, base, deviation, extract, ledger, mail, memo, plan, problems, record, verdict },
+  en: { access, base, deviation, extract, ledger, mail, memo, pages, plan, problems, record, verdict },
 } as const
 
 export type Locale = keyof typeof catalogue

@@ -1,0 +1,7 @@
+import { listDeviationsOperation, listMemosOperation, readDeviationOperation } from '#shared/contract/deviations'
+
+export const useDeviations = (studyId: string) => useApiData(listDeviationsOperation, { params: { studyId } })
+
+export const useDeviation = (params: { studyId: string, deviationId: string }) => useApiData(readDeviationOperation, { params })
+
+export const useMemos = (studyId: string) => useApiData(listMemosOperation, { params: { studyId } })
