@@ -1,18 +1,14 @@
 import { database } from '../database/client'
 import { servingRoleFault } from '../database/servingRole'
-import { DomainError } from '../domainError'
 import { log } from '../log'
 
 let fit: Promise<void> | undefined
 
 async function checkRole(): Promise<void> {
   const fault = await servingRoleFault(database())
-  if (fault) {
-    log.fatal({ fault }, 'refusing to serve')
-    process.exitCode = 1
-    process.kill(process.pid, 'SIGTERM')
-    throw new DomainError('database-unavailable')
-  }
+  if (!fault) return
+  log.fatal({ fault }, 'refusing to serve')
+  process.exit(1)
 }
 
 /**

@@ -33,12 +33,14 @@ function payloadOf(operation: Operation, { body, file }: Call<Operation>): { bod
 export class Client {
   readonly #cookies = new Map<string, string>()
 
+  constructor(readonly origin = serverOrigin()) {}
+
   /** Any request; keeps the cookies that come back. */
   async request(path: string, init: RequestInit = {}): Promise<Response> {
     const headers = new Headers(init.headers)
     if (this.#cookies.size > 0) headers.set('cookie', [...this.#cookies].map(([name, value]) => `${name}=${value}`).join('; '))
-    if (init.method && init.method !== 'GET' && !headers.has('origin')) headers.set('origin', serverOrigin())
-    const response = await fetch(serverOrigin() + path, { redirect: 'manual', ...init, headers })
+    if (init.method && init.method !== 'GET' && !headers.has('origin')) headers.set('origin', this.origin)
+    const response = await fetch(this.origin + path, { redirect: 'manual', ...init, headers })
     for (const cookie of response.headers.getSetCookie()) this.#keep(cookie)
     return response
   }
