@@ -15,7 +15,7 @@ export interface ExtractColumns {
   readonly value: Float64Array
   /** The subject's baseline on the row of the later value; NaN where missing. */
   readonly baseline: Float64Array | null
-  /** Null when the file carries no unit, which is then not screened. */
+  /** Null when the file carries no unit: every value then counts as one without it. */
   readonly unit: readonly string[] | null
   readonly site: readonly string[] | null
   /** How a value was imputed (e.g. LOCF); empty for an observed one. */
