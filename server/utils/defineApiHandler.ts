@@ -1,12 +1,13 @@
-import type { EventHandler, H3Event } from 'h3'
+import { defineEventHandler, getResponseStatus, getRouterParam, setResponseStatus, type EventHandler, type H3Event } from 'h3'
 import { opensToAdministrators, refusal, type Action } from '#shared/access/actions'
-import { isMedia, type AnswerOf, type BodyOf, type Media, type Operation, type ParamsOf, type QueryOf, type Shape } from '#shared/contract/operation'
+import type { AnswerOf, BodyOf, Media, Operation, ParamsOf, QueryOf, Shape } from '#shared/contract/operation'
 import { studyId as studyIdSchema } from '#shared/schemas/ids'
 import { database, type Database } from '../database/client'
 import { DomainError } from '../domainError'
 import { answerProblem } from '../error'
 import { log } from '../log'
 import { outsideStudies, standingOf, type RequestFacts, type Viewer } from '../services/viewer'
+import { fittingAnswer } from './fittingAnswer'
 import { changesState, requireContentType, requireOwnOrigin } from './ownOrigin'
 import { readInput, readRevision } from './readInput'
 import { requestFacts } from './requestFacts'
@@ -54,16 +55,6 @@ function requireSafeRequest(event: H3Event, operation: Operation): void {
 async function readContext(event: H3Event, operation: Operation) {
   const input = await readInput(event, operation)
   return { ...input, revision: operation.revision ? readRevision(event) : undefined, db: database(), event }
-}
-
-/** Checks what a service gave against the operation's answer; what does not fit is never sent. */
-function fittingAnswer({ id, answer }: Operation, given: unknown): unknown {
-  if (answer === null) return null
-  if (isMedia(answer)) return given
-  const parsed = answer.safeParse(JSON.parse(JSON.stringify(given)))
-  if (parsed.success) return parsed.data
-  log.error({ operation: id, places: parsed.error.issues.map(issue => `${issue.path.join('.')}: ${issue.code}`) }, 'answer does not fit')
-  throw new DomainError('internal')
 }
 
 /** Runs one operation and answers with its result or its problem; one line in the log either way. */

@@ -1,4 +1,4 @@
-import type { H3Event } from 'h3'
+import { getRequestHeader, type H3Event } from 'h3'
 import { isMedia, type Operation } from '#shared/contract/operation'
 import { config } from '../config'
 import { DomainError } from '../domainError'

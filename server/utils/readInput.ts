@@ -1,4 +1,4 @@
-import type { H3Event } from 'h3'
+import { getQuery, getRequestHeader, getRouterParams, type H3Event } from 'h3'
 import type { z } from 'zod'
 import { isMedia, type Operation } from '#shared/contract/operation'
 import type { ProblemDetail } from '#shared/contract/problems'

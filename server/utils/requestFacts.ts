@@ -1,4 +1,4 @@
-import type { H3Event } from 'h3'
+import { getRequestIP, type H3Event } from 'h3'
 import { config } from '../config'
 import type { RequestFacts } from '../services/viewer'
 
