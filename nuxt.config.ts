@@ -43,6 +43,10 @@ export default defineNuxtConfig({
   ],
   tailwindcss: { cssPath: '~/assets/css/tailwind.css', viewer: false },
 
+  imports: {
+    presets: [{ from: 'vee-validate', imports: ['useForm', 'useField', 'useFieldArray', 'useFieldValue'] }],
+  },
+
   i18n: {
     strategy: 'no_prefix',
     defaultLocale: 'en',

@@ -1,9 +1,9 @@
-import type { AnswerOf, BodyOf, Operation, ParamsOf, QueryOf } from '#shared/contract/operation'
+import type { AnswerOf, GivenBody, GivenParams, GivenQuery, Operation } from '#shared/contract/operation'
 
 type Given<Key extends string, Value> = [Value] extends [undefined] ? { [K in Key]?: undefined } : { [K in Key]: Value }
 
 /** What one call of an operation takes. */
-export type Call<O extends Operation> = Given<'params', ParamsOf<O>> & Given<'body', BodyOf<O>> & { query?: Partial<QueryOf<O>> } & { ifMatch?: number }
+export type Call<O extends Operation> = Given<'params', GivenParams<O>> & Given<'body', GivenBody<O>> & { query?: Partial<GivenQuery<O>> } & { ifMatch?: number }
 
 const pathOf = (operation: Operation, params: object | undefined) => {
   const values = params as Record<string, unknown> | undefined
@@ -19,7 +19,7 @@ export function useApi<O extends Operation>(operation: O): (call: Call<O>) => Pr
 
   return async ({ params, query, body, ifMatch }) => {
     try {
-      return await request(pathOf(operation, params as object | undefined), {
+      return await request<unknown, string>(pathOf(operation, params as object | undefined), {
         method: operation.method,
         query: query as Record<string, unknown> | undefined,
         body: body as Record<string, unknown> | undefined,

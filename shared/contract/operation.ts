@@ -40,6 +40,13 @@ export interface Operation<
 
 type ValueOf<S> = S extends z.ZodTypeAny ? z.output<S> : S extends Media ? Media : undefined
 
+/** As the caller writes it, before parsing brands and trims it. */
+type GivenOf<S> = S extends z.ZodTypeAny ? z.input<S> : S extends Media ? Media : undefined
+
+export type GivenParams<O> = O extends Operation<infer P, infer _Q, infer _B, infer _A> ? GivenOf<P> : never
+export type GivenQuery<O> = O extends Operation<infer _P, infer Q, infer _B, infer _A> ? GivenOf<Q> : never
+export type GivenBody<O> = O extends Operation<infer _P, infer _Q, infer B, infer _A> ? GivenOf<B> : never
+
 export type ParamsOf<O> = O extends Operation<infer P, infer _Q, infer _B, infer _A> ? ValueOf<P> : never
 export type QueryOf<O> = O extends Operation<infer _P, infer Q, infer _B, infer _A> ? ValueOf<Q> : never
 export type BodyOf<O> = O extends Operation<infer _P, infer _Q, infer B, infer _A> ? ValueOf<B> : never

@@ -25,7 +25,8 @@ function normality(quantity: Quantity): Requirement {
   }
 }
 
-function suggestion(kind: PrerequisiteKind, method: PlannedMethod, comparison: ComparisonKind): Requirement {
+/** One kind of prerequisite as it is usually registered, for the editor's *add*. */
+export function suggestRequirement(kind: PrerequisiteKind, comparison: ComparisonKind): Requirement {
   switch (kind) {
     case 'normality': {
       // With equal spread gated separately, or not assumed at all, each arm is measured by its own SD.
@@ -42,7 +43,7 @@ function suggestion(kind: PrerequisiteKind, method: PlannedMethod, comparison: C
       limits: { size: { ...skewness, limit: 0.5 } }, minimum: LEAST_JUDGED, otherReading: strict,
     }
     case 'positive-values': return { id: 'positive-values', kind }
-    case 'count': return { id: 'count', kind, scope: METHODS[method].arms === null ? 'in-all' : 'per-arm', least: { kind: 'number', n: LEAST_JUDGED } }
+    case 'count': return { id: 'count', kind, scope: comparison === 'arms' ? 'per-arm' : 'in-all', least: { kind: 'number', n: LEAST_JUDGED } }
     case 'missing-values': return { id: 'missing-values', kind, scope: 'all-arms', most: 0.2 }
   }
 }
@@ -57,6 +58,6 @@ export function prefill(method: PlannedMethod, style: PrefillStyle): Prerequisit
   const comparison = (Object.keys(measures) as ComparisonKind[])[0] ?? 'arms'
   return reliesOn.map((kind) => {
     const [usual = 'reported-only'] = PREREQUISITES[kind].consequences
-    return withConsequence(suggestion(kind, method, comparison), style === 'pretest' ? usual : 'reported-only')
+    return withConsequence(suggestRequirement(kind, comparison), style === 'pretest' ? usual : 'reported-only')
   })
 }
