@@ -1,4 +1,6 @@
 import type { Requirement } from '../plan/prerequisiteSchema'
+import type { Workspace as StatisticsWorkspace } from '../statistics/workspace'
+import type { Outcome } from '../statistics/types'
 import type { Measure } from './report'
 
 /** Whether the arms of the subjects are known: all of them, none for want of a list, or not all. */
@@ -10,7 +12,7 @@ export type ArmKnowledge = 'known' | 'none' | 'partial'
  * `offsets[g] ≤ i < offsets[g + 1]`; without arms, or while arms are not known, all values stand in the first.
  */
 export interface RuleSample {
-  readonly offsets: Int32Array
+  readonly offsets: Uint32Array
   readonly value: Float64Array
   readonly baseline: Float64Array | null
   readonly first: Float64Array | null
@@ -28,6 +30,9 @@ export interface RuleSample {
   readonly decisionPoint: boolean
 }
 
+/** Subjects in a sample; its lists may be longer. */
+export const sizeOf = ({ offsets }: RuleSample): number => offsets[offsets.length - 1] ?? 0
+
 /** The values as one transformation leaves them, derived; view 0 is the untransformed one. */
 export interface ViewState {
   readonly values: Float64Array
@@ -40,10 +45,16 @@ export interface ViewState {
 export interface Workspace {
   readonly capacity: number
   readonly views: readonly ViewState[]
-  /** The quantity that is being judged, and room to sort it. */
+  readonly statistics: StatisticsWorkspace
+  /** Where a kernel leaves its figures. */
+  readonly figures: Outcome
+  /** The quantity that is being judged, where it is not a view itself. */
   readonly quantity: Float64Array
-  readonly sorted: Float64Array
+  /** Offsets of all values as one sample. */
+  readonly pooled: Uint32Array
+  /** By sample: p-values as found and adjusted across arms. */
   readonly pValues: Float64Array
+  readonly adjusted: Float64Array
   /** By check: packed outcome, or `UNJUDGED`. */
   readonly outcomes: Int32Array
   /** By step: what became of it. */
@@ -66,10 +77,10 @@ export const DF2 = 6
 export const LIMIT = 7
 /** 1 broken, 0 not, NaN where it cannot be told or nothing is held against it. */
 export const BROKEN = 8
-/** Row of a sample that carries its size (in `VALUE`) and whether it breaks. */
-export const SAMPLE_ROW = 0
-
-/** Where a check keeps its figures: for each sample a head row and one row a measure, then those of the whole. */
+/**
+ * Where a check keeps its figures: for each sample a head row (its size as `VALUE`, and whether it breaks) and
+ * one row a measure, then those of the whole.
+ */
 export interface TraceLayout {
   readonly start: number
   readonly samples: number
@@ -106,6 +117,9 @@ export interface CompiledStep {
   /** Indices of its own prerequisites among the checks. */
   readonly checks: readonly number[]
 }
+
+/** What turns values into judged ones. */
+export type Deriving = Pick<CompiledRule, 'derivation' | 'views'>
 
 export interface View { readonly shift: number, readonly base: 'e' | '2' | '10' | null }
 

@@ -16,7 +16,7 @@ const minimum = z.number().int().min(3).max(5000)
 const multiplicity = z.enum(['none', 'bonferroni', 'holm'])
 
 /** A size of departure, a significance level, or both. */
-const limits = <M extends [string, ...string[]], P extends [string, ...string[]]>(measure: M, procedures: P) => z.strictObject({
+const limits = <M extends string, P extends string>(measure: [M, ...M[]], procedures: [P, ...P[]]) => z.strictObject({
   size: z.strictObject({ measure: z.enum(measure), limit: z.number().positive(), reading: z.enum(READINGS) }).nullable(),
   significance: z.strictObject({ procedure: z.enum(procedures), level }).nullable(),
   /** With a size and a level: which of them must break. */

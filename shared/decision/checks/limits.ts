@@ -43,8 +43,8 @@ export function breaksUpwards(estimate: number, lower: number, upper: number, li
   return Number.isNaN(read) ? UNTOLD : told(read > limit)
 }
 
-/** A p-value breaks its level when it lies below it. */
-export const breaksLevel = (pValue: number, level: number): Breach => (Number.isNaN(pValue) ? UNTOLD : told(pValue < level))
+/** A p-value breaks its level when it does not exceed it: the test rejects at that level. */
+export const breaksLevel = (pValue: number, level: number): Breach => (Number.isNaN(pValue) ? UNTOLD : told(pValue <= level))
 
 /** Size and level joined as the plan says; with one of them only, that one. */
 export function joinBreaches(size: Breach | null, level: Breach | null, broken: 'either' | 'both'): Breach {

@@ -1,0 +1,48 @@
+import type { Requirement } from '../../plan/prerequisiteSchema'
+import { residualsByOwnSdKernel, residualsKernel } from '../../statistics/descriptive/residuals'
+import type { SampleProblem } from '../../statistics/types'
+import { viewValues } from '../derive'
+import { type Deriving, type RuleSample, sizeOf, type TraceLayout, type Workspace } from '../rule'
+import { UNTOLD } from './limits'
+import { judgeShape, type ShapeLimits } from './shape'
+import { untoldFor, wholeVerdict } from './verdicts'
+
+type Normality = Extract<Requirement, { kind: 'normality' }>
+type Symmetry = Extract<Requirement, { kind: 'symmetry' }>
+type Pooled = 'residuals' | 'residuals-by-own-sd'
+
+export const normalityLimits = ({ limits, minimum, multiplicity, otherReading }: Normality): ShapeLimits => ({ ...limits, minimum, multiplicity, otherReading })
+
+/** Symmetry is read off the skewness alone. */
+export const symmetryLimits = ({ limits, minimum, otherReading }: Symmetry): ShapeLimits =>
+  ({ size: limits.size, significance: null, broken: 'either', minimum, multiplicity: 'none', otherReading })
+
+const isPooled = (quantity: Normality['quantity'] | Symmetry['quantity']): quantity is Pooled => quantity === 'residuals' || quantity === 'residuals-by-own-sd'
+
+/** How many samples are judged: one an arm for values within arms, else one. */
+export const samplesJudged = (requirement: Normality | Symmetry, groups: number): number => (requirement.quantity === 'values-within-arms' ? groups : 1)
+
+/** Pooled residuals need every arm: with one empty there is no model. */
+function formResiduals(quantity: Pooled, values: Float64Array, { offsets }: RuleSample, into: Float64Array): SampleProblem | null {
+  for (let group = 0; group + 1 < offsets.length; group++) {
+    if (offsets[group] === offsets[group + 1]) return 'sample-too-small'
+  }
+  if (quantity === 'residuals-by-own-sd') return residualsByOwnSdKernel(values, offsets, into)
+  residualsKernel(values, offsets, into)
+  return null
+}
+
+/** Judges the shape of whatever the prerequisite names, on the values of one view. */
+export function shapeCheck(requirement: Normality | Symmetry, limits: ShapeLimits, view: number, deriving: Deriving, layout: TraceLayout) {
+  const { quantity } = requirement
+  return (sample: RuleSample, workspace: Workspace): number => {
+    const values = viewValues(view, deriving, sample, workspace)
+    if (values === null) return wholeVerdict(UNTOLD, 'procedure-undefined', limits.otherReading)
+    if (quantity === 'values-within-arms') return judgeShape(limits, layout, values, sample.offsets, workspace)
+    workspace.pooled[1] = sizeOf(sample)
+    if (!isPooled(quantity)) return judgeShape(limits, layout, values, workspace.pooled, workspace)
+    const problem = formResiduals(quantity, values, sample, workspace.quantity)
+    if (problem !== null) return wholeVerdict(UNTOLD, untoldFor(problem), limits.otherReading)
+    return judgeShape(limits, layout, workspace.quantity, workspace.pooled, workspace)
+  }
+}
