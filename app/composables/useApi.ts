@@ -1,14 +1,9 @@
-import type { AnswerOf, GivenBody, GivenParams, GivenQuery, Operation } from '#shared/contract/operation'
+import type { AnswerOf, BodyInputOf, Operation, ParamsInputOf, QueryInputOf } from '#shared/contract/operation'
 
 type Given<Key extends string, Value> = [Value] extends [undefined] ? { [K in Key]?: undefined } : { [K in Key]: Value }
 
 /** What one call of an operation takes. */
-export type Call<O extends Operation> = Given<'params', GivenParams<O>> & Given<'body', GivenBody<O>> & { query?: Partial<GivenQuery<O>> } & { ifMatch?: number }
-
-const pathOf = (operation: Operation, params: object | undefined) => {
-  const values = params as Record<string, unknown> | undefined
-  return operation.path.replace(/\[(\w+)\]/g, (_match, name: string) => encodeURIComponent(String(values?.[name] ?? '')))
-}
+export type Call<O extends Operation> = Given<'params', ParamsInputOf<O>> & Given<'body', BodyInputOf<O>> & { query?: Partial<QueryInputOf<O>> } & { ifMatch?: number }
 
 /**
  * Calls one operation of the contract; on the server it carries the visitor's cookie along. A refusal is thrown
@@ -19,7 +14,7 @@ export function useApi<O extends Operation>(operation: O): (call: Call<O>) => Pr
 
   return async ({ params, query, body, ifMatch }) => {
     try {
-      return await request<unknown, string>(pathOf(operation, params as object | undefined), {
+      return await request<unknown, string>(operationPath(operation, params), {
         method: operation.method,
         query: query as Record<string, unknown> | undefined,
         body: body as Record<string, unknown> | undefined,
@@ -32,8 +27,19 @@ export function useApi<O extends Operation>(operation: O): (call: Call<O>) => Pr
   }
 }
 
-/** Reads an operation for a page: once on the server, again when asked. */
+/** Reads an operation for a page: once on the server, again when asked. The page answers with the status of a refusal. */
 export function useApiData<O extends Operation>(operation: O, call: Call<O>) {
   const read = useApi(operation)
-  return useAsyncData<AnswerOf<O>, ApiProblem>(`${operation.id} ${JSON.stringify(call)}`, () => read(call))
+  const event = useRequestEvent()
+
+  return useAsyncData<AnswerOf<O>, ApiProblem>(`${operation.id} ${JSON.stringify(call)}`, async () => {
+    try {
+      return await read(call)
+    }
+    catch (failure) {
+      const problem = asApiProblem(failure)
+      if (event) setResponseStatus(event, problem.status || 503)
+      throw problem
+    }
+  })
 }

@@ -1,19 +1,17 @@
 /**
  * Binds a form control either to the surrounding vee-validate form by its name, or to `v-model` alone. A control
- * outside a form, or one that is given a model value, never enters the form's document.
+ * that is given a model value never enters the form's document.
  */
-export function useFieldBinding<T>(name: () => string, model: Ref<T | undefined>, given: boolean) {
+export function useFieldBinding<T>(name: () => string, model: Ref<T | undefined>) {
   const id = useId()
-  if (given) {
-    return { id, value: model, errorMessage: ref<string | undefined>(undefined), blur: () => {} }
-  }
+  if (hasModel()) return { id, value: model, errorMessage: ref<string | undefined>(undefined), blur: () => {} }
+
   const { value, errorMessage, handleBlur } = useField<T>(name, undefined, { keepValueOnUnmount: true })
-  watch(value, next => model.value = next)
   return { id, value, errorMessage: useIssueText(errorMessage), blur: () => handleBlur() }
 }
 
-/** Whether a parent gave this component a model value. */
-export function hasModel(): boolean {
+/** Whether the parent gave this component a model value. */
+function hasModel(): boolean {
   const props = getCurrentInstance()?.vnode.props ?? {}
   return 'modelValue' in props || 'model-value' in props || 'onUpdate:modelValue' in props
 }

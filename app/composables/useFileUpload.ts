@@ -8,9 +8,8 @@ export function useFileUpload<O extends Operation>(operation: O): Uploading<O> {
   let request: XMLHttpRequest | null = null
 
   const send: Uploading<O>['send'] = (file, { params, query }) => new Promise((resolve, reject) => {
-    const path = operation.path.replace(/\[(\w+)\]/g, (_match, name: string) => encodeURIComponent(params[name] ?? ''))
     const current = request = new XMLHttpRequest()
-    current.open(operation.method, `${path}?${new URLSearchParams(query)}`)
+    current.open(operation.method, `${operationPath(operation, params)}?${new URLSearchParams(query)}`)
     current.responseType = 'json'
     current.setRequestHeader('Content-Type', 'text/csv')
     current.upload.onprogress = ({ loaded, total }) => {

@@ -1,11 +1,11 @@
-/** Schemas answer with codes; this words them, and leaves what is a sentence already as it is. */
+/** A field's message: schemas of ours answer with codes, which are worded here; sentences stay as they are. */
 export function useIssueText(message: Ref<string | undefined>) {
   const { t, te } = useI18n()
 
   return computed(() => {
     const code = message.value
-    if (!code) return undefined
+    if (!code || !/^[a-z0-9-]+$/.test(code)) return code
     const key = ['plan.issues', 'problems.detail'].map(lead => `${lead}.${code}`).find(candidate => te(candidate))
-    return key ? t(key) : code
+    return key ? t(key) : t('base.unworded', { code })
   })
 }

@@ -1,6 +1,8 @@
 import type { ProblemDetail } from '#shared/contract/problems'
 import type { ApiProblem } from '~/utils/apiProblem'
 
+const NAMESPACES = ['problems.detail', 'extract.findings', 'plan.issues'] as const
+
 /** Problems in words: the sentence of the whole, and one line for each finding with its place. */
 export function useProblemTexts() {
   const { t, te } = useI18n()
@@ -14,8 +16,8 @@ export function useProblemTexts() {
   }
 
   function detail(finding: ProblemDetail): string {
-    const key = ['problems.detail', 'extract.findings', 'plan.issues'].map(lead => `${lead}.${finding.code}`).find(candidate => te(candidate))
-    const what = key ? t(key, finding.params ?? {}) : finding.code
+    const key = NAMESPACES.map(namespace => `${namespace}.${finding.code}`).find(candidate => te(candidate))
+    const what = key ? t(key, wordedParams(finding.params)) : t('base.unworded', { code: finding.code })
     const place = placeOf(finding)
     return place ? t('base.placed', { place, what }) : what
   }

@@ -1,9 +1,9 @@
-import { viewerOperation } from '#shared/contract/session'
+import { viewerOperation, type ViewerView } from '#shared/contract/session'
 
-/** Who is signed in and what they hold; read once and shared by header, navigation and pages. */
+/** Who is signed in and what they hold; read by the layout and shared by header, navigation and pages. */
 export function useViewer() {
   const read = useApi(viewerOperation)
-  const viewer = useState<Awaited<ReturnType<typeof read>> | null>('viewer', () => null)
+  const viewer = useState<ViewerView | null>('viewer', () => null)
 
   async function refresh() {
     viewer.value = await read({}).catch(() => null)
