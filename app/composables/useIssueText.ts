@@ -5,7 +5,7 @@ export function useIssueText(message: Ref<string | undefined>) {
   return computed(() => {
     const code = message.value
     if (!code || !/^[a-z0-9-]+$/.test(code)) return code
-    const key = ['plan.issues', 'problems.detail'].map(lead => `${lead}.${code}`).find(candidate => te(candidate))
+    const key = ['problems.detail', 'plan.issues'].map(lead => `${lead}.${code}`).find(candidate => te(candidate))
     return key ? t(key) : t('base.unworded', { code })
   })
 }

@@ -8,7 +8,8 @@ import { findingsOf } from '#shared/schemas/findings'
 export default defineNuxtPlugin({
   name: 'schema-messages',
   dependsOn: ['i18n:plugin'],
-  setup({ $i18n }) {
+  setup() {
+    const { $i18n } = useNuxtApp()
     z.setErrorMap((issue, { defaultError }) => {
       const finding = findingsOf(new ZodError([{ ...issue, message: defaultError }]))[0]
       return { message: finding ? $i18n.t(`problems.detail.${finding.code}`, wordedParams(finding.params)) : defaultError }
