@@ -36,7 +36,7 @@ export const signatureRows = (signatures: readonly MemoSignature[], say: Say): C
   [116, 128, 96, '*'],
   [say('memo.signature.name'), say('memo.signature.meaning'), say('memo.signature.moment'), say('memo.signature.hash')],
   signatures.map(({ name, role, meaning, at, hash }) => [
-    { stack: [name, { text: say(`access.role.${role}`), style: 'small' }] },
+    { stack: [name, { text: say(`access.roles.${role}`), style: 'small' }] },
     say(`memo.meaning.${meaning}`),
     momentWords(at, say),
     hashText(hash),

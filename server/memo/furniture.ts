@@ -15,7 +15,7 @@ export const headerOf = ({ study, number }: MemoContent, say: Say): DynamicConte
     {
       columns: [
         { ...brandColumn(), width: 14 },
-        { text: say('memo.header.product'), style: 'brand', width: 'auto', margin: [0, 1, 0, 0] },
+        { text: say('memo.header.product'), style: 'brand', width: 'auto', margin: [0, -1, 0, 0] },
         { text: say('memo.header.memo', { study: study.protocolNumber, number }), style: 'soft', alignment: 'right', width: '*', margin: [0, 3, 0, 0] },
       ],
       columnGap: 5,
@@ -35,7 +35,7 @@ function asBlock(content: Content): Exclude<Content, string | unknown[]> {
 /** The signature of the memo as every page shows it: who, as what, meaning, when, over which bytes. */
 const manifestation = (signature: MemoSignature, say: Say): Content => ({
   text: [
-    { text: say('memo.footer.signedBy', { name: signature.name, role: say(`access.role.${signature.role}`) }), bold: true, color: INK.ink },
+    { text: say('memo.footer.signedBy', { name: signature.name, role: say(`access.roles.${signature.role}`) }), bold: true, color: INK.ink },
     { text: ` ${say(`memo.meaning.${signature.meaning}`)} · ${momentWords(signature.at, say)}` },
   ],
 })

@@ -10,7 +10,6 @@ const YEARS = 10
 
 const OID = {
   commonName: '2.5.4.3',
-  organization: '2.5.4.10',
   subjectKeyIdentifier: '2.5.29.14',
   keyUsage: '2.5.29.15',
   basicConstraints: '2.5.29.19',
@@ -45,10 +44,8 @@ async function exists(path: string): Promise<boolean> {
   }
 }
 
-function nameParts(): AttributeTypeAndValue[] {
-  return [[OID.commonName, 'Stipule memo signature'], [OID.organization, 'Stipule']]
-    .map(([type, value]) => new AttributeTypeAndValue({ type, value: new Utf8String({ value }) }))
-}
+/** Neither a person nor a machine: the installation signs that the content was signed by whom it names. */
+const nameParts = () => [new AttributeTypeAndValue({ type: OID.commonName, value: new Utf8String({ value: 'Stipule memo signature' }) })]
 
 async function extensionsFor(publicKey: webcrypto.CryptoKey): Promise<Extension[]> {
   const spki = await webcrypto.subtle.exportKey('spki', publicKey)

@@ -35,7 +35,7 @@ const drawing = (body: string) => `<svg xmlns="http://www.w3.org/2000/svg" viewB
 export function marked(verdict: Marked, words: string, { bold = false, size = 11 } = {}): Content {
   const { ink, body } = SHAPES[SHAPE_OF[verdict]]
   return {
-    columns: [{ svg: drawing(body), width: size, margin: [0, 1.5, 0, 0] }, { text: words, color: ink, bold, width: '*' }],
+    columns: [{ svg: drawing(body), width: size, margin: [0, 2.2, 0, 0] }, { text: words, color: ink, bold, width: '*' }],
     columnGap: 4,
   }
 }

@@ -1,12 +1,14 @@
 import * as clearances from './clearances'
+import * as deviations from './deviations'
 import * as health from './health'
 import * as members from './members'
 import type { Operation } from './operation'
 import * as people from './people'
+import * as plans from './plans'
 import * as session from './session'
 import * as studies from './studies'
 
-const resources: readonly Readonly<Record<string, unknown>>[] = [session, people, studies, members, clearances, health]
+const resources: readonly Readonly<Record<string, unknown>>[] = [session, people, studies, members, clearances, health, plans, deviations]
 
 const isOperation = (value: unknown): value is Operation =>
   typeof value === 'object' && value !== null && 'method' in value && 'path' in value && 'answer' in value

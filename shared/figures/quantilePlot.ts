@@ -31,7 +31,7 @@ export function quantilePlot(plot: PlotData, words: QuantileWords): Figure {
   const line = referenceLine(plot.fitted, x.domain)
   const heights = [...quantiles.flatMap(({ value, lower, upper }) => [value, lower, upper])]
   const y = heights.length > 0 ? linearAxis(words.quantity, least(heights), greatest(heights)) : linearAxis(words.quantity, 0, 1)
-  const beside = quantiles[Math.floor(quantiles.length * 0.8)]
+  const beside = quantiles[Math.floor(quantiles.length * 0.65)]
   return {
     kind: 'normal-quantile',
     title: words.title,

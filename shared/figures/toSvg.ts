@@ -65,8 +65,11 @@ function drawBars({ bars, y: axis }: Figure, { x, y }: Place): string {
 const drawDots = ({ dots }: Figure, { x, y }: Place) =>
   dots.map(dot => `<circle cx="${short(x(dot.x))}" cy="${short(y(dot.y))}" r="1.5" fill="${INKS.data}"/>`).join('')
 
+const BESIDE = { start: 5, middle: 0, end: -5 } as const
+
+/** A label keeps clear of its mark: beside it, and below where the mark is a reference. */
 const drawLabel = ({ role, text: words, x, y, anchor }: Label, place: Place) =>
-  text(words, place.x(x) + (anchor === 'start' ? 5 : anchor === 'end' ? -5 : 0), place.y(y), anchor, INKS[role])
+  text(words, place.x(x) + BESIDE[anchor], place.y(y) + (role === 'reference' ? TEXT + 3 : 0), anchor, INKS[role])
 
 /**
  * Draws a figure as a stand-alone SVG document, band and reference behind the data. What lies beyond the axes

@@ -59,8 +59,8 @@ export interface MemoPlan {
 export interface MemoAnalysis {
   /** Verbatim from the signed plan. */
   readonly registered: PlannedAnalysis
-  /** The same in words, as the plan page shows it. */
-  readonly words: readonly string[]
+  /** The same in sentences: what is compared and how, what it relies on, what takes over in which order. */
+  readonly words: { readonly frame: readonly string[], readonly prerequisites: readonly string[], readonly order: readonly string[] }
   readonly endpoint: { readonly label: string, readonly unit: string }
   readonly analysisSet: string
   /** Planned arms that are compared, by their labels; empty in an analysis without arms. */

@@ -51,7 +51,7 @@ function nameCell(prerequisite: SeenPrerequisite, say: Say): TableCell {
 }
 
 function verdictCell({ verdict, reason }: SeenPrerequisite, say: Say): TableCell {
-  const words = marked(verdict, say(`memo.prerequisiteVerdict.${verdict}`))
+  const words = marked(verdict, say(`verdict.prerequisite.${verdict}`))
   return reason === null ? { stack: [words] } : { stack: [words, { text: reasonWords(reason, say), style: 'small' }] }
 }
 

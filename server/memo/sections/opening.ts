@@ -38,13 +38,13 @@ export function opening(memo: MemoContent, signedAt: string, say: Say): Content[
     { ...asStack(marked(verdict.word, verdictWords(analysis.registered, verdict, say), { bold: true, size: 15 })), margin: [0, 3, 0, 8] },
     { text: lead(memo, say), style: 'lead', margin: [0, 0, 0, 10] },
     facts([
-      [say('memo.fact.class'), { text: say(`deviation.class.${memo.deviationClass}`), bold: true }],
+      [say('memo.fact.class'), { text: say(`deviation.classes.${memo.deviationClass}`), bold: true }],
       [say('memo.fact.force'), say(memo.binding ? 'memo.force.binding' : 'memo.force.provisional')],
       [say('memo.fact.edition'), say(`memo.edition.${memo.edition}`)],
       [say('memo.fact.deviation'), say('memo.fact.deviationOpened', { number: deviation.number, moment: momentWords(deviation.openedAt, say) })],
       [say('memo.fact.plan'), say('memo.fact.planVersion', { version: plan.version, protocol: plan.protocolVersion })],
       [say('memo.fact.extract'), say('memo.fact.extractNumber', { number: extract.number, title: extract.title, cutOff: dateWords(extract.cutOff, say) })],
-      [say('memo.fact.sponsor'), say('memo.fact.sponsorPhase', { sponsor: study.sponsor, phase: say(`access.phase.${study.phase}`) })],
+      [say('memo.fact.sponsor'), say('memo.fact.sponsorPhase', { sponsor: study.sponsor, phase: say(`memo.phase.${study.phase}`) })],
       [say('memo.fact.signed'), momentWords(signedAt, say)],
     ]),
   ]

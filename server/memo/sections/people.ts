@@ -27,7 +27,7 @@ export function settlementSection({ settlement }: MemoContent, say: Say): Conten
   return [
     heading(say('memo.heading.settlement')),
     facts([
-      [say('memo.fact.settlement'), { text: say(`deviation.settlement.${kind}`), bold: true }],
+      [say('memo.fact.settlement'), { text: say(`deviation.settlements.${kind}`), bold: true }],
       [say('memo.fact.note'), note],
     ]),
     paragraph(say(`memo.settlement.${kind}`)),

@@ -1,6 +1,7 @@
 import type { Content } from 'pdfmake/interfaces'
 import type { MemoContent } from '../../../shared/memo/content'
 import { facts, hashText, heading, paragraph, signatureRows, subheading } from '../blocks'
+import { INK } from '../styles'
 import { dateWords, momentWords, type Say } from '../words'
 
 function declarationWords({ declaration }: MemoContent['plan'], say: Say): Content {
@@ -10,12 +11,21 @@ function declarationWords({ declaration }: MemoContent['plan'], say: Say): Conte
   return `${subject} ${say(`memo.declaration.seen.${dataSeen}`)}`
 }
 
+const list = (kind: 'ul' | 'ol', lines: readonly string[]): Content => {
+  const items = lines.map(text => ({ text, margin: [0, 0, 0, 1.5] as [number, number, number, number] }))
+  return kind === 'ul' ? { ul: items, markerColor: INK.soft } : { ol: items, markerColor: INK.soft }
+}
+
 /** The planned analysis as signed, and the proof of when it was signed. */
 export function registeredSection(memo: MemoContent, say: Say): Content[] {
   const { plan, analysis } = memo
   return [
     heading(say('memo.heading.registered')),
-    { ul: analysis.words.map(words => ({ text: words, margin: [0, 0, 0, 1.5] })), markerColor: '#55625C' },
+    list('ul', analysis.words.frame),
+    subheading(say('memo.heading.prerequisites')),
+    list('ul', analysis.words.prerequisites),
+    subheading(say('memo.heading.steps')),
+    list('ol', analysis.words.order),
     subheading(say('memo.heading.plan')),
     facts([
       [say('memo.fact.planSigned'), momentWords(plan.signedAt, say)],
