@@ -1,11 +1,11 @@
 /** ISO 8601 date, partial dates included (`2026-03`), with or without a time after it. */
 const SHAPE = /^(\d{4})(?:-(\d{2})(?:-(\d{2})(?:T\S*)?)?)?$/
 
-export type DateReading =
-  | { readonly kind: 'date', readonly text: string, readonly complete: boolean }
-  | { readonly kind: 'missing' }
-  | { readonly kind: 'impossible' }
-  | { readonly kind: 'other-notation' }
+export type DateReading
+  = | { readonly kind: 'date', readonly text: string, readonly complete: boolean }
+    | { readonly kind: 'missing' }
+    | { readonly kind: 'impossible' }
+    | { readonly kind: 'other-notation' }
 
 function daysOf(year: number, month: number): number {
   const leap = (year % 4 === 0 && year % 100 !== 0) || year % 400 === 0

@@ -3,7 +3,8 @@ import type { ExtractColumns } from '../../shared/decision/columns'
 import type { Plan } from '../../shared/plan/schema'
 import { ColumnsBuilder } from './columns'
 import { openCsv, type CsvFile, type Delimiter } from './csv'
-import { FindingList, UnreadableFile, type FindingSummary } from './findings'
+import type { FindingList, FindingSummary } from './findings'
+import { UnreadableFile } from './findings'
 import { completeMapping, headerFaults, suggestMapping, type SuggestedMapping } from './mapping'
 
 /** Rows shown before a mapping is confirmed. */
@@ -61,7 +62,7 @@ export interface MappingProposal {
 }
 
 /** What the header and first rows tell about which column is what. */
-export function proposeMapping(plan: Plan, { header, preview }: FileHead, remembered: ColumnMapping | null): MappingProposal {
+export function proposeMapping(plan: Plan, { header, preview }: Pick<FileHead, 'header' | 'preview'>, remembered: ColumnMapping | null): MappingProposal {
   const suggested = suggestMapping(plan, header, preview, remembered)
   const refused = headerFaults(plan, header, suggested)
     .map(({ code, column }): Finding => ({ severity: 'refuse', code, row: 1, column, params: {} }))

@@ -1,12 +1,12 @@
 /** What a cell that is no number looks like; words stand under `extract.looks`. */
-export type NotANumber =
-  | 'decimal-comma' | 'thousands' | 'censored' | 'minus-sign' | 'foreign-digits' | 'parentheses' | 'percent'
-  | 'missing-code' | 'out-of-range' | 'other'
+export type NotANumber
+  = | 'decimal-comma' | 'thousands' | 'censored' | 'minus-sign' | 'foreign-digits' | 'parentheses' | 'percent'
+    | 'missing-code' | 'out-of-range' | 'other'
 
-export type NumberReading =
-  | { readonly kind: 'number', readonly value: number }
-  | { readonly kind: 'missing' }
-  | { readonly kind: 'not-a-number', readonly looks: NotANumber }
+export type NumberReading
+  = | { readonly kind: 'number', readonly value: number }
+    | { readonly kind: 'missing' }
+    | { readonly kind: 'not-a-number', readonly looks: NotANumber }
 
 const PLAIN = /^[+-]?(?:\d+(?:\.\d*)?|\.\d+)(?:[eE][+-]?\d+)?$/
 const NONZERO = /[1-9]/

@@ -14,10 +14,10 @@ const MAGIC = 'STPCOL01'
 const TEXTS = ['subject', 'parameter', 'visit', 'unit', 'site', 'imputed', 'arm'] as const
 const FLAG = 'flag:'
 
-type Described =
-  | { readonly name: string, readonly kind: 'rows' }
-  | { readonly name: string, readonly kind: 'numbers' }
-  | { readonly name: string, readonly kind: 'texts', readonly dictionary: readonly string[] }
+type Described
+  = | { readonly name: string, readonly kind: 'rows' }
+    | { readonly name: string, readonly kind: 'numbers' }
+    | { readonly name: string, readonly kind: 'texts', readonly dictionary: readonly string[] }
 
 interface Description { readonly rows: number, readonly columns: readonly Described[] }
 

@@ -8,6 +8,7 @@ export type EarlierDuty
  */
 export const SEPARATED = {
   'plan.sign-reviewer': ['plan.author'],
+  'allocation.upload': ['extract.upload', 'deviation.settle'],
   'extract.give-reason': ['extract.upload'],
   'query.resolve': ['extract.upload'],
   'deviation.settle': ['extract.upload', 'release.sign'],

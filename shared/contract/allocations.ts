@@ -3,7 +3,7 @@ import { finding } from './extracts'
 import { defineOperation } from './operation'
 import { EXAMPLE, hashText, momentText, personView, studyParams } from './parts'
 
-/** What everybody may know: that a list is there. */
+/** A list as cleared members see it; findings quote what stands in it. */
 export const allocationView = z.strictObject({
   id: z.string().uuid(),
   kind: z.enum(['true', 'dummy']),
@@ -26,5 +26,5 @@ export const uploadAllocationOperation = defineOperation({
   id: 'allocations.upload', method: 'POST', path: '/api/studies/[studyId]/allocations', action: 'allocation.upload', scope: 'study',
   params: studyParams, query: z.strictObject({ kind: z.enum(['true', 'dummy']) }),
   body: { media: 'upload', types: ['text/csv', 'application/octet-stream'] }, answer: allocationView,
-  errors: ['plan-not-signed', 'too-large', 'file-refused', 'separation-of-duties', 'wrong-state'], example: { params: { studyId: EXAMPLE.id }, query: { kind: 'true' } },
+  errors: ['plan-not-signed', 'too-large', 'invalid-input', 'separation-of-duties', 'wrong-state'], example: { params: { studyId: EXAMPLE.id }, query: { kind: 'true' } },
 })

@@ -1,8 +1,9 @@
 import { z } from 'zod'
+import { dataQueryId, extractId } from '../schemas/domainIds'
 import { defineOperation } from './operation'
 import { credentials, EXAMPLE, hashText, momentText, personView, reasonText, signatureView, studyParams, uuid } from './parts'
 
-export const extractParams = studyParams.extend({ extractId: uuid })
+export const extractParams = studyParams.extend({ extractId })
 
 /** Which column of the file holds what; `flags` names every column that the plan's sets and selections use. */
 export const columnMapping = z.strictObject({
@@ -100,7 +101,8 @@ export const uploadExtractOperation = defineOperation({
   params: studyParams,
   query: z.strictObject({ fileName: z.string().min(1).max(200), cutOff: z.string().date('not-a-date'), purpose: z.enum(['interim', 'database-lock']) }),
   body: { media: 'upload', types: ['text/csv', 'application/octet-stream'] }, answer: extractView,
-  errors: ['plan-not-signed', 'too-large', 'file-refused', 'treatment-column', 'wrong-state'], example: { params: { studyId: EXAMPLE.id }, query: { fileName: 'adeff.csv', cutOff: '2026-04-02', purpose: 'interim' } },
+  errors: ['plan-not-signed', 'too-large', 'treatment-column', 'invalid-input'],
+  example: { params: { studyId: EXAMPLE.id }, query: { fileName: 'adeff.csv', cutOff: '2026-04-02', purpose: 'interim' } },
 })
 
 export const readExtractOperation = defineOperation({
@@ -136,8 +138,8 @@ export const withdrawExtractOperation = defineOperation({
 
 export const resolveQueryOperation = defineOperation({
   id: 'queries.resolve', method: 'POST', path: '/api/studies/[studyId]/extracts/[extractId]/queries/[queryId]/resolution', action: 'query.resolve', scope: 'study',
-  params: extractParams.extend({ queryId: uuid }), query: null,
+  params: extractParams.extend({ queryId: dataQueryId }), query: null,
   body: credentials.extend({ decision: z.enum(['cleared', 'overruled']), note: reasonText }), answer: extractView,
-  errors: ['wrong-state', 'separation-of-duties', 'signature-refused'],
+  errors: ['wrong-state', 'already-done', 'separation-of-duties', 'signature-refused'],
   example: { params: { ...example.params, queryId: EXAMPLE.id }, body: { ...signed, decision: 'cleared', note: 'Confirmed by the site.' } },
 })

@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { ANALYSIS_VERDICTS, PLANNED_METHODS, REASONS } from '../plan/terms'
 import { MEASURES, type SeenAnalysis, type SeenReport } from '../decision/report'
+import { extractId } from '../schemas/domainIds'
 import { extractParams } from './extracts'
 import { defineOperation } from './operation'
 import { credentials, EXAMPLE, hashText, momentText, personView, reasonText, signatureView, studyParams, uuid } from './parts'
@@ -118,12 +119,12 @@ export const listEventsOperation = defineOperation({
   params: studyParams, query: null, body: null, answer: z.strictObject({ events: z.array(studyEvent) }), errors: [], example: { params: { studyId: EXAMPLE.id } },
 })
 
-const eventErrors = ['wrong-state', 'already-done', 'queries-open', 'signature-refused', 'separation-of-duties'] as const
+const eventErrors = ['wrong-state', 'already-done', 'queries-open', 'invalid-input', 'signature-refused'] as const
 const signed = { identifier: 'mara@example.org', password: '…' }
 
 export const lockDatabaseOperation = defineOperation({
   id: 'events.lock-database', method: 'POST', path: '/api/studies/[studyId]/events/database-locked', action: 'event.lock-database', scope: 'study',
-  params: studyParams, query: null, body: credentials.extend({ extractId: uuid, reason: reasonText.nullable() }), answer: studyEvent, errors: eventErrors,
+  params: studyParams, query: null, body: credentials.extend({ extractId, reason: reasonText.nullable() }), answer: studyEvent, errors: eventErrors,
   example: { params: { studyId: EXAMPLE.id }, body: { ...signed, extractId: EXAMPLE.id, reason: null } },
 })
 
