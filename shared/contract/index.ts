@@ -1,6 +1,9 @@
+import * as allocations from './allocations'
 import * as clearances from './clearances'
 import * as deviations from './deviations'
+import * as extracts from './extracts'
 import * as health from './health'
+import * as ledger from './ledger'
 import * as members from './members'
 import type { Operation } from './operation'
 import * as people from './people'
@@ -8,7 +11,7 @@ import * as plans from './plans'
 import * as session from './session'
 import * as studies from './studies'
 
-const resources: readonly Readonly<Record<string, unknown>>[] = [session, people, studies, members, clearances, health, plans, deviations]
+const resources: readonly Readonly<Record<string, unknown>>[] = [session, people, studies, members, clearances, health, plans, extracts, allocations, ledger, deviations]
 
 const isOperation = (value: unknown): value is Operation =>
   typeof value === 'object' && value !== null && 'method' in value && 'path' in value && 'answer' in value
