@@ -18,7 +18,7 @@ export function useApi<O extends Operation>(operation: O): (call: Call<O>) => Pr
         method: operation.method,
         query: query as Record<string, unknown> | undefined,
         body: body as Record<string, unknown> | undefined,
-        headers: ifMatch === undefined ? undefined : { 'If-Match': `"${ifMatch}"` },
+        headers: ifMatch === undefined ? undefined : { 'if-match': `"${ifMatch}"` },
       }) as AnswerOf<O>
     }
     catch (failure) {
