@@ -23,7 +23,7 @@ export function normalSf(z: number): number {
  */
 export function normalQuantile(p: number): number {
   // erfcinv is relatively exact on (0, 1]; 1 − p is exact from a half upwards.
-  return p > 0.5 ? Math.SQRT2 * erfcinv(2 * (1 - p)) : -Math.SQRT2 * erfcinv(2 * p)
+  return p >= 0.5 ? Math.SQRT2 * erfcinv(2 * (1 - p)) : -Math.SQRT2 * erfcinv(2 * p)
 }
 
 /** Mills' expansion, 1 − 1/z² + 3/z⁴ − 15/z⁶ + …, nested. */

@@ -32,13 +32,22 @@ function pValueOf(a: number): number {
   return 3.7e-24
 }
 
-/** A² of ordered values in standard units, from logarithms of both tails, so that it stays finite. */
+/**
+ * A² of ordered values in standard units, from logarithms of both tails, so that it stays finite. Each term is
+ * taken less its mean under the sum, −n, and the rest added up with Kahan's compensation: A² is a small
+ * difference of numbers as large as n².
+ */
 function statisticOf(z: Float64Array, n: number): number {
   let sum = 0
+  let lost = 0
   for (let i = 0; i < n; i++) {
-    sum += (2 * i + 1) * (normalLogCdf(z[i]!) + normalLogCdf(-z[n - 1 - i]!))
+    const logarithms = normalLogCdf(z[i]!) + normalLogCdf(-z[n - 1 - i]!)
+    const term = ((2 * i + 1) * logarithms + n) - lost
+    const next = sum + term
+    lost = (next - sum) - term
+    sum = next
   }
-  return -n - sum / n
+  return -sum / n
 }
 
 /** Kernel of {@link andersonDarling}: statistic (A², not adjusted), pValue. */
