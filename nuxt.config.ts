@@ -87,6 +87,7 @@ export default defineNuxtConfig({
   },
 
   eslint: { config: { stylistic: { quotes: 'single', semi: false, commaDangle: 'always-multiline' } } },
+  vite: { build: { assetsInlineLimit: 0 } }, // small fonts would become data: addresses, which the policy above refuses
   typescript: {
     strict: true,
     tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } },

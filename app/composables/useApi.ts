@@ -16,6 +16,7 @@ export function useApi<O extends Operation>(operation: O): (call: Call<O>) => Pr
     try {
       return await request<unknown, string>(operationPath(operation, params), {
         method: operation.method,
+        retry: false, // a refusal stays one, and some readings are recorded each time
         query: query as Record<string, unknown> | undefined,
         body: body as Record<string, unknown> | undefined,
         headers: ifMatch === undefined ? undefined : { 'if-match': `"${ifMatch}"` },
