@@ -23,10 +23,12 @@ function copyRuntimeFiles(serverDir: string) {
 }
 
 export default defineNuxtConfig({
-  compatibilityDate: '2026-11-01',
-  telemetry: false,
-  devtools: { enabled: false },
   modules: ['@pinia/nuxt', '@nuxtjs/tailwindcss', '@nuxtjs/i18n', '@sidebase/nuxt-auth', 'nuxt-security', '@nuxt/eslint'],
+
+  imports: {
+    presets: [{ from: 'vee-validate', imports: ['useForm', 'useField', 'useFieldArray', 'useFieldValue'] }],
+  },
+  devtools: { enabled: false },
 
   app: {
     head: {
@@ -41,11 +43,46 @@ export default defineNuxtConfig({
     '@fontsource/source-serif-4/400.css', '@fontsource/source-serif-4/600.css',
     '@fontsource/source-code-pro/400.css',
   ],
-  tailwindcss: { cssPath: '~/assets/css/tailwind.css', viewer: false },
+  compatibilityDate: '2026-11-01',
 
-  imports: {
-    presets: [{ from: 'vee-validate', imports: ['useForm', 'useField', 'useFieldArray', 'useFieldValue'] }],
+  nitro: {
+    inlineDynamicImports: false, // the dev preset's `true` would run worker and migration inside the dev server
+    errorHandler: '~~/server/error.ts',
+    esbuild: { options: { target: 'es2022' } },
+    rollupConfig: {
+      output: { manualChunks: () => undefined }, // else a worker would start the whole application
+      plugins: [workerEntries({
+        'worker.mjs': path('./server/workers/jobs.ts'),
+        'migrate.mjs': path('./server/workers/migrate.ts'),
+        'seed.mjs': path('./server/cli/seed.ts'),
+        'check.mjs': path('./server/cli/check.ts'),
+        'mail-sink.mjs': path('./server/cli/mailSink.ts'),
+      })],
+    },
+    hooks: {
+      'rollup:before'(nitro) {
+        requireContract(nitro)
+      },
+      compiled(nitro) {
+        if (!nitro.options.dev) copyRuntimeFiles(nitro.options.output.serverDir)
+      },
+    },
   },
+  vite: { build: { assetsInlineLimit: 0 } }, // small fonts would become data: addresses, which the policy above refuses
+  typescript: {
+    strict: true,
+    tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } },
+  },
+  telemetry: false,
+
+  auth: {
+    originEnvKey: 'AUTH_ORIGIN',
+    provider: { type: 'authjs' },
+    globalAppMiddleware: true,
+    sessionRefresh: { enablePeriodically: false, enableOnWindowFocus: false },
+  },
+
+  eslint: { config: { stylistic: { quotes: 'single', semi: false, commaDangle: 'always-multiline' } } },
 
   i18n: {
     strategy: 'no_prefix',
@@ -53,13 +90,6 @@ export default defineNuxtConfig({
     detectBrowserLanguage: false,
     locales: [{ code: 'en', language: 'en-GB', name: 'English' }],
     vueI18n: path('./app/i18n.config.ts'),
-  },
-
-  auth: {
-    originEnvKey: 'AUTH_ORIGIN',
-    provider: { type: 'authjs' },
-    globalAppMiddleware: true,
-    sessionRefresh: { enablePeriodically: false, enableOnWindowFocus: false },
   },
 
   security: {
@@ -85,35 +115,5 @@ export default defineNuxtConfig({
       },
     },
   },
-
-  eslint: { config: { stylistic: { quotes: 'single', semi: false, commaDangle: 'always-multiline' } } },
-  vite: { build: { assetsInlineLimit: 0 } }, // small fonts would become data: addresses, which the policy above refuses
-  typescript: {
-    strict: true,
-    tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } },
-  },
-
-  nitro: {
-    inlineDynamicImports: false, // the dev preset's `true` would run worker and migration inside the dev server
-    errorHandler: '~~/server/error.ts',
-    esbuild: { options: { target: 'es2022' } },
-    rollupConfig: {
-      output: { manualChunks: () => undefined }, // else a worker would start the whole application
-      plugins: [workerEntries({
-        'worker.mjs': path('./server/workers/jobs.ts'),
-        'migrate.mjs': path('./server/workers/migrate.ts'),
-        'seed.mjs': path('./server/cli/seed.ts'),
-        'check.mjs': path('./server/cli/check.ts'),
-        'mail-sink.mjs': path('./server/cli/mailSink.ts'),
-      })],
-    },
-    hooks: {
-      'rollup:before'(nitro) {
-        requireContract(nitro)
-      },
-      compiled(nitro) {
-        if (!nitro.options.dev) copyRuntimeFiles(nitro.options.output.serverDir)
-      },
-    },
-  },
+  tailwindcss: { cssPath: '~/assets/css/tailwind.css', viewer: false },
 })
