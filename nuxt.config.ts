@@ -68,7 +68,7 @@ export default defineNuxtConfig({
       },
     },
   },
-  vite: { build: { assetsInlineLimit: 0 } }, // small fonts would become data: addresses, which the policy above refuses
+  vite: { build: { assetsInlineLimit: 0 } }, // small fonts would become data: addresses, which the content security policy refuses
   typescript: {
     strict: true,
     tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } },
