@@ -1,6 +1,6 @@
-import canonicalize from 'canonicalize'
 import { and, desc, eq, isNotNull, max } from 'drizzle-orm'
 import type { Report } from '../../shared/decision/report'
+import { canonicalText } from '../../shared/record/canonical'
 import type { CheckId, DataQueryId, ExtractId, ReleaseId } from '../../shared/schemas/domainIds'
 import type { StudyId } from '../../shared/schemas/ids'
 import type { Database, Transaction } from '../database/client'
@@ -131,8 +131,8 @@ async function tellAtOnce(tx: Transaction, at: RunAddress, { analyses }: Report,
  * that came out the same to the last figure: whether they did depends on the query alone, never on arms.
  */
 async function carryOver(tx: Transaction, before: typeof check.$inferSelect, now: { readonly report: Report, readonly checkId: CheckId }): Promise<void> {
-  const former = new Map(readReport(before.reportBytes).analyses.map(analysis => [analysis.analysis, canonicalize(analysis)]))
-  const unchanged = new Set(now.report.analyses.filter(analysis => former.get(analysis.analysis) === canonicalize(analysis)).map(({ analysis }) => analysis))
+  const former = new Map(readReport(before.reportBytes).analyses.map(analysis => [analysis.analysis, canonicalText(analysis)]))
+  const unchanged = new Set(now.report.analyses.filter(analysis => former.get(analysis.analysis) === canonicalText(analysis)).map(({ analysis }) => analysis))
   const signed = await tx.select().from(release).where(and(eq(release.studyId, before.studyId), eq(release.checkId, before.id), isNotNull(release.signatureId)))
   for (const row of signed) {
     const analyses = row.analyses.filter(analysis => unchanged.has(analysis))

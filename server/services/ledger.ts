@@ -25,7 +25,7 @@ function columnOf(row: Accepted, plan: SignedPlan, binding: ExtractId | null) {
   return {
     extractId: row.id,
     number: row.number,
-    title: extractTitle(row, plan.document) ?? row.fileName,
+    title: extractTitle(row, plan.document),
     cutOff: row.cutOff,
     standing: row.standing,
     planVersion: plan.version,

@@ -1,8 +1,7 @@
-import canonicalize from 'canonicalize'
-import { createHash } from 'node:crypto'
 import { and, eq } from 'drizzle-orm'
 import { release as throughTheGate } from '../../shared/blinding/release'
 import type { SeenReport } from '../../shared/decision/report'
+import { canonicalBytes, sha256 } from '../../shared/record/canonical'
 import type { ExtractId, ReleaseId } from '../../shared/schemas/domainIds'
 import type { PersonId, StudyId } from '../../shared/schemas/ids'
 import type { Database, Queryable, Transaction } from '../database/client'
@@ -56,9 +55,7 @@ function pendingAnalyses(checked: CheckedReport): string[] {
 function previewOf(checked: CheckedReport): { seen: SeenReport, hash: string } {
   const released = new Set([...signedAnalyses(checked), ...pendingAnalyses(checked)])
   const seen = throughTheGate(checked.report, { cleared: false }, { ...releaseStateOf(checked, released), blindBroken: false })
-  const text = canonicalize(seen)
-  if (text === undefined) throw new DomainError('internal')
-  return { seen, hash: createHash('sha256').update(text).digest('hex') }
+  return { seen, hash: sha256(canonicalBytes(seen)) }
 }
 
 export type ReleaseStanding = 'open' | 'released' | 'nothing-to-release' | 'not-yet'

@@ -43,7 +43,7 @@ async function viewOf(db: Queryable, checked: SeenCheck, analysis: string) {
   const endpoint = document.endpoints.find(({ id }) => id === registered.endpoint)
   return {
     extract: {
-      id: row.id, number: row.number, title: extractTitle(row, document) ?? row.fileName, cutOff: row.cutOff, standing: row.standing,
+      id: row.id, number: row.number, title: extractTitle(row, document), cutOff: row.cutOff, standing: row.standing,
       binding: await bindingExtract(db, row.studyId) === row.id,
     },
     planVersion: plan.version,

@@ -1,11 +1,10 @@
-import canonicalize from 'canonicalize'
-import { createHash } from 'node:crypto'
 import type { Allocation } from '../../shared/decision/columns'
 import { contentHash } from '../../shared/decision/contentHash'
 import { judge } from '../../shared/decision/judge'
 import type { ExtractIdentity, Report } from '../../shared/decision/report'
 import { screenExtract, type Resolutions, type ScreenFinding } from '../../shared/decision/screen'
 import type { Plan } from '../../shared/plan/schema'
+import { canonicalBytes, sha256 } from '../../shared/record/canonical'
 import { decodeColumns } from '../readers/storedColumns'
 
 /** What a thread needs to judge one extract: plain data, so that it can be handed over. */
@@ -28,11 +27,9 @@ export interface JudgeResult {
 
 export type RunJudge = (task: JudgeTask) => Promise<JudgeResult>
 
-function seal(report: Report): NonNullable<JudgeResult['judged']> {
-  const text = canonicalize(report)
-  if (text === undefined) throw new TypeError('report has no canonical form')
-  const bytes = new TextEncoder().encode(text)
-  return { report, bytes, hash: createHash('sha256').update(bytes).digest('hex') }
+function withBytes(report: Report): NonNullable<JudgeResult['judged']> {
+  const bytes = canonicalBytes(report)
+  return { report, bytes, hash: sha256(bytes) }
 }
 
 /** Runs on a thread: screens, content hash and, when asked, the report with its canonical bytes. */
@@ -42,6 +39,6 @@ export default function judgeExtract({ plan, columns: stored, extract, allocatio
   return {
     contentHash: hash,
     screens: screenExtract(plan, columns),
-    judged: verdicts ? seal(judge({ plan, columns, extract: { ...extract, contentHash: hash }, allocation, queries })) : null,
+    judged: verdicts ? withBytes(judge({ plan, columns, extract: { ...extract, contentHash: hash }, allocation, queries })) : null,
   }
 }

@@ -1,9 +1,10 @@
 import { describe, expect, it } from 'vitest'
+import type { ColumnMapping } from '#shared/contract/extracts'
 import { completeMapping, headerFaults, mappingFaults, missingRoles, suggestMapping } from '../../../../server/readers/mapping'
 import { plainReaderPlan, readerPlan } from '../../../helpers/readerPlan'
 
 const adam = ['STUDYID', 'USUBJID', 'SITEID', 'PARAMCD', 'AVISIT', 'AVAL', 'BASE', 'AVALU', 'DTYPE', 'FASFL', 'ANL01FL']
-const whole = {
+const whole: ColumnMapping = {
   subject: ['USUBJID'], parameter: 'PARAMCD', visit: 'AVISIT', value: 'AVAL', baseline: 'BASE', unit: 'AVALU', site: 'SITEID', imputed: 'DTYPE',
   arm: null, flags: { FASFL: 'FASFL', ANL01FL: 'ANL01FL' },
 }
@@ -77,7 +78,7 @@ describe('headerFaults', () => {
 })
 
 describe('mappingFaults', () => {
-  const faults = (changes: Partial<typeof whole> & { arm?: string | null }) => mappingFaults(readerPlan(), [...adam, 'SEX', 'SEX'], { ...whole, ...changes })
+  const faults = (changes: Partial<ColumnMapping>) => mappingFaults(readerPlan(), [...adam, 'SEX', 'SEX'], { ...whole, ...changes })
 
   it('accepts a mapping that the file and the plan carry', () => {
     expect(faults({})).toEqual([])
@@ -87,10 +88,10 @@ describe('mappingFaults', () => {
   it('points at what is wrong', () => {
     expect(faults({ value: 'RESULT' })).toEqual([{ pointer: '/value', code: 'column-unknown' }])
     expect(faults({ site: 'SEX' })).toEqual([{ pointer: '/site', code: 'column-repeated' }])
-    expect(faults({ visit: null as unknown as string })).toEqual([{ pointer: '/visit', code: 'required' }])
+    expect(faults({ visit: null })).toEqual([{ pointer: '/visit', code: 'required' }])
     expect(faults({ subject: ['USUBJID', 'USUBJID'] })).toEqual([{ pointer: '/subject/1', code: 'column-twice' }])
-    expect(faults({ flags: { FASFL: 'FASFL' } as never })).toEqual([{ pointer: '/flags/ANL01FL', code: 'required' }])
-    expect(faults({ flags: { ...whole.flags, SAFFL: 'FASFL' } as never })).toEqual([{ pointer: '/flags/SAFFL', code: 'not-allowed' }])
+    expect(faults({ flags: { FASFL: 'FASFL' } })).toEqual([{ pointer: '/flags/ANL01FL', code: 'required' }])
+    expect(faults({ flags: { ...whole.flags, SAFFL: 'FASFL' } })).toEqual([{ pointer: '/flags/SAFFL', code: 'not-allowed' }])
   })
 
   it('takes no arm from the extract of a blinded study', () => {
