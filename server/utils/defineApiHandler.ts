@@ -1,11 +1,12 @@
 import { defineEventHandler, getResponseStatus, getRouterParam, setResponseStatus, type EventHandler, type H3Event } from 'h3'
-import { opensToAdministrators, refusal, type Action } from '#shared/access/actions'
+import { isSigned, opensToAdministrators, refusal, type Action } from '#shared/access/actions'
 import type { AnswerOf, BodyOf, Media, Operation, ParamsOf, QueryOf, Shape } from '#shared/contract/operation'
 import { studyId as studyIdSchema } from '#shared/schemas/ids'
 import { database, type Database } from '../database/client'
 import { DomainError } from '../domainError'
 import { answerProblem } from '../error'
 import { log } from '../log'
+import { signedOperation } from '../services/signatureAttempts'
 import { outsideStudies, standingOf, type RequestFacts, type Viewer } from '../services/viewer'
 import { fittingAnswer } from './fittingAnswer'
 import { changesState, requireContentType, requireOwnOrigin } from './ownOrigin'
@@ -90,7 +91,8 @@ export function defineApiHandler<O extends Operation>(
     const refused = refusal(action, viewer.standing)
     if (refused) throw new DomainError(refused)
     const context = { ...await readContext(event, operation), viewer }
-    return handle(context as typeof context & InputOf<O>)
+    const run = () => handle(context as typeof context & InputOf<O>)
+    return isSigned(action) ? signedOperation(context.db, { studyId: studyIdSchema.parse(getRouterParam(event, 'studyId')), viewer }, run) : run()
   })
 }
 

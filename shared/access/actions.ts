@@ -113,3 +113,6 @@ export function refusal(action: Action, standing: Standing): Refusal | null {
   if (rule.exposure === 'unexposed' && standing.blindHolds && (standing.exposed || standing.cleared)) return 'exposed'
   return null
 }
+
+/** Whether an action asks for identifier and password again. */
+export const isSigned = (action: Action): boolean => (ACTIONS[action] as Rule).signed === true

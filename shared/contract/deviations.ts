@@ -3,7 +3,7 @@ import type { MemoContent } from '../memo/content'
 import { deviationId, memoId } from '../schemas/domainIds'
 import { seenVerdict } from './ledger'
 import { defineOperation } from './operation'
-import { credentials, EXAMPLE, hashText, momentText, personView, reasonText, signatureView, studyParams, uuid } from './parts'
+import { commentText, credentials, EXAMPLE, hashText, momentText, personView, reasonText, signatureView, studyParams, uuid } from './parts'
 
 const deviationParams = studyParams.extend({ deviationId })
 
@@ -75,7 +75,7 @@ export const readDeviationOperation = defineOperation({
 /** Informed, not agreed; declining asks for a reason and changes no verdict. */
 export const acknowledgeOperation = defineOperation({
   id: 'deviations.acknowledge', method: 'POST', path: '/api/studies/[studyId]/deviations/[deviationId]/acknowledgement', action: 'deviation.acknowledge', scope: 'study',
-  params: deviationParams, query: null, body: credentials.extend({ decision: z.enum(['acknowledged', 'declined']), comment: z.string().trim().max(2000).nullable() }),
+  params: deviationParams, query: null, body: credentials.extend({ decision: z.enum(['acknowledged', 'declined']), comment: commentText.nullable() }),
   answer: deviationView, errors, example: { ...example, body: { ...signed, decision: 'acknowledged', comment: null } },
 })
 

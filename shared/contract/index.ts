@@ -4,14 +4,16 @@ import * as deviations from './deviations'
 import * as extracts from './extracts'
 import * as health from './health'
 import * as ledger from './ledger'
+import * as mailbox from './mailbox'
 import * as members from './members'
 import type { Operation } from './operation'
 import * as people from './people'
 import * as plans from './plans'
+import * as record from './record'
 import * as session from './session'
 import * as studies from './studies'
 
-const resources: readonly Readonly<Record<string, unknown>>[] = [session, people, studies, members, clearances, health, plans, extracts, allocations, ledger, deviations]
+const resources: readonly Readonly<Record<string, unknown>>[] = [session, people, studies, members, clearances, health, plans, extracts, allocations, ledger, deviations, record, mailbox]
 
 const isOperation = (value: unknown): value is Operation =>
   typeof value === 'object' && value !== null && 'method' in value && 'path' in value && 'answer' in value

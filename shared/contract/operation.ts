@@ -40,13 +40,6 @@ export interface Operation<
 
 type ValueOf<S> = S extends z.ZodTypeAny ? z.output<S> : S extends Media ? Media : undefined
 
-/** As the caller writes it, before parsing brands and trims it. */
-type GivenOf<S> = S extends z.ZodTypeAny ? z.input<S> : S extends Media ? Media : undefined
-
-export type GivenParams<O> = O extends Operation<infer P, infer _Q, infer _B, infer _A> ? GivenOf<P> : never
-export type GivenQuery<O> = O extends Operation<infer _P, infer Q, infer _B, infer _A> ? GivenOf<Q> : never
-export type GivenBody<O> = O extends Operation<infer _P, infer _Q, infer B, infer _A> ? GivenOf<B> : never
-
 export type ParamsOf<O> = O extends Operation<infer P, infer _Q, infer _B, infer _A> ? ValueOf<P> : never
 export type QueryOf<O> = O extends Operation<infer _P, infer Q, infer _B, infer _A> ? ValueOf<Q> : never
 export type BodyOf<O> = O extends Operation<infer _P, infer _Q, infer B, infer _A> ? ValueOf<B> : never
@@ -61,9 +54,15 @@ export type BodyInputOf<O> = O extends Operation<infer _P, infer _Q, infer B, in
 
 export const isMedia = (shape: Shape): shape is Media => shape !== null && 'media' in shape
 
-/** Keeps the literal types of a declaration. */
+type Revised<O> = O & { readonly revision: true }
+
+/** Keeps the literal types of a declaration, and whether it asks for a revision. */
 export function defineOperation<
   P extends z.ZodTypeAny | null, Q extends z.ZodTypeAny | null, B extends Shape, A extends Shape,
->(operation: Operation<P, Q, B, A>): Operation<P, Q, B, A> {
+>(operation: Revised<Operation<P, Q, B, A>>): Revised<Operation<P, Q, B, A>>
+export function defineOperation<
+  P extends z.ZodTypeAny | null, Q extends z.ZodTypeAny | null, B extends Shape, A extends Shape,
+>(operation: Operation<P, Q, B, A>): Operation<P, Q, B, A>
+export function defineOperation(operation: Operation): Operation {
   return operation
 }

@@ -26,7 +26,14 @@ export const signatureView = z.strictObject({
 })
 export type SignatureView = z.infer<typeof signatureView>
 
-export const reasonText = z.string().trim().min(3, 'too-short').max(2000, 'too-long')
+/** NUL, which no text of the database can hold, and halves of surrogate pairs, which no hash can cover. */
+const UNSTORABLE = /\u0000|\p{Surrogate}/u
+
+const prose = (text: z.ZodString) => text.refine(words => !UNSTORABLE.test(words), 'control-character').transform(words => words.normalize('NFC'))
+
+export const reasonText = prose(z.string().trim().min(3, 'too-short').max(2000, 'too-long'))
+/** What somebody may add; empty when they add nothing. */
+export const commentText = prose(z.string().trim().max(2000, 'too-long'))
 
 /** A person where they are named beside an act. */
 export const personView = z.strictObject({ id: uuid, name: z.string() })
