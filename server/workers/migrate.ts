@@ -63,7 +63,7 @@ async function run(): Promise<void> {
 
 /** On a database that has nobody yet, a single-use link; the demo makes its own people. */
 async function offerFirstAdministrator(): Promise<void> {
-  if (process.env.STIPULE_DEMO === 'if-empty' || process.env.STIPULE_DEMO === 'true') return
+  if (process.env.STIPULE_DEMO === 'true') return
   const { db, close } = openDatabase(databaseUrl, { max: 1 })
   try {
     const link = await firstAdministratorLink(db, { origin, authSecret: secrets.authSecret })
