@@ -1,4 +1,4 @@
-import type { Content, TDocumentDefinitions } from 'pdfmake/interfaces'
+import type { Attachment, Content, TDocumentDefinitions } from 'pdfmake/interfaces'
 import type { MemoContent, MemoSignature } from '../../shared/memo/content'
 import { footerOf, headerOf } from './furniture'
 import { blindingSection, courseSection } from './sections/course'
@@ -34,6 +34,14 @@ const pages = (content: MemoContent, signature: MemoSignature, say: Say): Conten
   ...proofSection(content, signature, say),
 ]
 
+/** These reach the file too, though the types of pdfmake do not name them. */
+type AttachedFile = Attachment & { readonly type: string, readonly relationship: 'Data', readonly creationDate: Date, readonly modifiedDate: Date }
+
+const attachment = (bytes: Uint8Array, at: Date, say: Say): AttachedFile => ({
+  src: `data:application/json;base64,${Buffer.from(bytes).toString('base64')}`,
+  name: 'memo.json', type: 'application/json', description: say('memo.file.attachment'), relationship: 'Data', creationDate: at, modifiedDate: at,
+})
+
 /**
  * The memo as a document: A4, our faces embedded, the signed content attached. The file's own properties name
  * study and memo number only.
@@ -48,12 +56,7 @@ export function memoDocument({ content, bytes, signature }: SignedMemo, say: Say
       title: say('memo.header.memo', { study: content.study.protocolNumber, number: content.number }),
       subject: say('memo.file.subject'), creator: 'Stipule', producer: 'Stipule', creationDate: at, modDate: at,
     },
-    files: {
-      memo: {
-        src: `data:application/json;base64,${Buffer.from(bytes).toString('base64')}`,
-        name: 'memo.json', type: 'application/json', description: say('memo.file.attachment'), relationship: 'Data', creationDate: at, modifiedDate: at,
-      },
-    },
+    files: { memo: attachment(bytes, at, say) },
     pageSize: 'A4',
     pageMargins: MARGINS,
     styles: STYLES,

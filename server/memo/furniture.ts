@@ -2,6 +2,7 @@ import type { Content, DynamicContent } from 'pdfmake/interfaces'
 import type { MemoContent, MemoSignature } from '../../shared/memo/content'
 import { brandMark } from './marks'
 import { INK, MARGINS, TEXT_WIDTH } from './styles'
+import { roleWords } from './terms'
 import { momentWords, type Say } from './words'
 
 const line = (ink: string): Content => ({
@@ -14,28 +15,20 @@ export const headerOf = ({ study, number }: MemoContent, say: Say): DynamicConte
   stack: [
     {
       columns: [
-        { ...brandColumn(), width: 14 },
+        { stack: [brandMark(14)], width: 14 },
         { text: say('memo.header.product'), style: 'brand', width: 'auto', margin: [0, -1, 0, 0] },
         { text: say('memo.header.memo', { study: study.protocolNumber, number }), style: 'soft', alignment: 'right', width: '*', margin: [0, 3, 0, 0] },
       ],
       columnGap: 5,
     },
-    { ...asBlock(line(INK.rule)), margin: [0, 5, 0, 0] },
+    { stack: [line(INK.rule)], margin: [0, 5, 0, 0] },
   ],
 })
-
-const brandColumn = () => asBlock(brandMark(14))
-
-/** A content node that takes further properties; plain strings and arrays do not occur here. */
-function asBlock(content: Content): Exclude<Content, string | unknown[]> {
-  if (typeof content === 'string' || Array.isArray(content)) return { stack: [content] }
-  return content
-}
 
 /** The signature of the memo as every page shows it: who, as what, meaning, when, over which bytes. */
 const manifestation = (signature: MemoSignature, say: Say): Content => ({
   text: [
-    { text: say('memo.footer.signedBy', { name: signature.name, role: say(`access.roles.${signature.role}`) }), bold: true, color: INK.ink },
+    { text: say('memo.footer.signedBy', { name: signature.name, role: roleWords(signature.role, say) }), bold: true, color: INK.ink },
     { text: ` ${say(`memo.meaning.${signature.meaning}`)} · ${momentWords(signature.at, say)}` },
   ],
 })

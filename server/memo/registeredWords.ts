@@ -1,9 +1,9 @@
-import type { MemoAnalysis } from '../../shared/memo/content'
-import type { PlannedAnalysis } from '../../shared/plan/analysisSchema'
-import { describeComparison, describeFallback, describePrerequisite } from '../../shared/plan/describe'
+import type { MemoAnalysis, MemoStep } from '../../shared/memo/content'
+import type { Fallback, PlannedAnalysis } from '../../shared/plan/analysisSchema'
+import { describeComparison, describePrerequisite, describeTransformation, describeTrigger } from '../../shared/plan/describe'
 import { wordPhrase, type Phrase } from '../../shared/plan/phrase'
 import type { Plan } from '../../shared/plan/schema'
-import { stepName } from './terms'
+import { stepHead, stepName } from './terms'
 import { registered, type Say } from './words'
 
 function endpointWords(plan: Plan, { endpoint }: PlannedAnalysis, say: Say): string {
@@ -17,7 +17,7 @@ function frameWords(plan: Plan, analysis: PlannedAnalysis, say: Say): string[] {
   const { recordSelection } = analysis
   return [
     endpointWords(plan, analysis, say),
-    wordPhrase(describeComparison(plan, analysis), say),
+    say('memo.words.comparison', { comparison: wordPhrase(describeComparison(plan, analysis), say) }),
     recordSelection === null ? say('memo.words.set', { set }) : say('memo.words.setSelected', { set, column: recordSelection.column, value: recordSelection.value }),
     ...(analysis.estimand === null ? [] : [say('memo.words.estimand', { estimand: analysis.estimand })]),
     say('memo.words.method', {
@@ -31,16 +31,21 @@ function frameWords(plan: Plan, analysis: PlannedAnalysis, say: Say): string[] {
   ]
 }
 
-function orderWords(analysis: PlannedAnalysis, say: Say): string[] {
+function stepWords(step: Fallback, analysis: PlannedAnalysis, say: Say): MemoStep {
   const word = (phrase: Phrase) => wordPhrase(phrase, say)
-  const steps = analysis.fallbacks.map((step, index) => say('memo.words.step', {
-    place: index + 1, details: describeFallback(step).map(word).join('; '), measure: say(`plan.measures.${step.summaryMeasure}`),
-  }))
-  const leadsTo = analysis.notAssessableLeadsTo === null
-    ? say('memo.words.notAssessableNothing')
-    : say('memo.words.notAssessableStep', { step: stepName(analysis, analysis.notAssessableLeadsTo, say) })
-  return [...steps, leadsTo]
+  return {
+    head: say('memo.step.when', { step: stepHead(analysis, step.id, say), trigger: word(describeTrigger(step.trigger)) }),
+    lines: [
+      ...step.transformation === null ? [] : [word(describeTransformation(step.transformation))],
+      ...step.prerequisites.map(prerequisite => word(describePrerequisite(prerequisite))),
+      say('memo.words.measure', { measure: say(`plan.measures.${step.summaryMeasure}`) }),
+    ],
+  }
 }
+
+const notAssessableWords = (analysis: PlannedAnalysis, say: Say) => analysis.notAssessableLeadsTo === null
+  ? say('memo.words.notAssessableNothing')
+  : say('memo.words.notAssessableStep', { step: stepName(analysis, analysis.notAssessableLeadsTo, say) })
 
 /** The planned analysis in sentences, in the order in which the rule reads it. */
 export const registeredWords = (plan: Plan, analysis: PlannedAnalysis, say: Say): MemoAnalysis['words'] => ({
@@ -48,5 +53,6 @@ export const registeredWords = (plan: Plan, analysis: PlannedAnalysis, say: Say)
   prerequisites: analysis.prerequisites.map(prerequisite => say('memo.words.prerequisite', {
     prerequisite: wordPhrase(describePrerequisite(prerequisite), say), consequence: say(`plan.consequences.${prerequisite.onFailure}`),
   })),
-  order: orderWords(analysis, say),
+  order: analysis.fallbacks.map(step => stepWords(step, analysis, say)),
+  notAssessable: notAssessableWords(analysis, say),
 })

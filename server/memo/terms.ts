@@ -3,18 +3,34 @@ import type { PlannedAnalysis } from '../../shared/plan/analysisSchema'
 import type { Reason } from '../../shared/plan/terms'
 import type { Say } from './words'
 
-/** A step by its place in the registered order and its method, e.g. `step 2, planned method after log`. */
+/** Place in the registered order, from 1, and method of a step; null where there is no such step. */
+function placeOf({ fallbacks }: PlannedAnalysis, step: string | null, say: Say): { place: number, method: string } | null {
+  const index = fallbacks.findIndex(({ id }) => id === step)
+  const found = fallbacks[index]
+  return found ? { place: index + 1, method: say(`plan.methods.${found.method}`) } : null
+}
+
+/** A step within a sentence, e.g. `step 2, planned method on logarithms`. */
 export function stepName(analysis: PlannedAnalysis, step: string | null, say: Say): string {
-  const index = analysis.fallbacks.findIndex(fallback => fallback.id === step)
-  const found = analysis.fallbacks[index]
-  return found ? say('memo.step.name', { place: index + 1, method: say(`plan.methods.${found.method}`) }) : ''
+  const place = placeOf(analysis, step, say)
+  return place ? say('memo.step.name', { ...place }) : ''
+}
+
+/** A step at the head of its block. */
+export function stepHead(analysis: PlannedAnalysis, step: string, say: Say): string {
+  const place = placeOf(analysis, step, say)
+  return place ? say('memo.step.head', { ...place }) : step
 }
 
 export const reasonWords = (reason: string | Reason | null, say: Say) => reason === null ? '' : say(`verdict.reason.${reason}`)
 
 /** The verdict of a planned analysis in one line, with the step or the reason that belongs to it. */
 export function verdictWords(analysis: PlannedAnalysis, { word, step, reason }: Pick<MemoVerdict, 'word' | 'step' | 'reason'>, say: Say): string {
-  if (word === 'fallback-applies') return say('memo.verdict.applies', { step: stepName(analysis, step, say) })
+  const place = word === 'fallback-applies' ? placeOf(analysis, step, say) : null
+  if (place) return say('memo.verdict.applies', { ...place })
   const said = say(`verdict.word.${word}`)
   return reason === null ? said : say('memo.verdict.because', { verdict: said, reason: reasonWords(reason, say) })
 }
+
+/** Roles as they were at signing, kept as codes separated by blanks. */
+export const roleWords = (role: string, say: Say) => role.split(' ').map(each => say(`access.roles.${each}`)).join(', ')

@@ -7,6 +7,7 @@ import { DomainError } from '../domainError'
 import { deviationFacts, type DeviationAddress, type DeviationFacts } from './deviationFacts'
 import { namedInvestigators } from './deviations'
 import { viewDeviation } from './deviationViews'
+import { notify } from './notices'
 import { appendRecord } from './record'
 import { sign, type Credentials } from './signatures'
 import { actorOf, type Viewer } from './viewer'
@@ -52,6 +53,7 @@ export async function acknowledge(db: Database, { decision, comment: given, view
         chain: { studyId }, actor: actorOf(viewer), action: `deviation.${decision}`, subject: deviationId,
         detail: { number: facts.row.number, comment, signature: signature.id },
       })
+      await notify(tx, { studyId, kind: 'deviation', id: deviationId })
       return view
     })
   }

@@ -1,4 +1,4 @@
-import { and, eq, isNull, max, sql } from 'drizzle-orm'
+import { and, eq, max, sql } from 'drizzle-orm'
 import type { SeenAnalysis } from '../../shared/decision/report'
 import type { CheckId, DeviationId, ExtractId } from '../../shared/schemas/domainIds'
 import type { StudyId } from '../../shared/schemas/ids'
@@ -6,13 +6,13 @@ import type { Queryable, Transaction } from '../database/client'
 import { newId } from '../database/newId'
 import { onlyRow } from '../database/onlyRow'
 import { deviation, deviationEntry } from '../database/schema/deviation'
-import { studyMember } from '../database/schema/member'
-import { person } from '../database/schema/person'
 import { study } from '../database/schema/study'
 import { DomainError } from '../domainError'
 import { blindAnalyses, type JudgedCheck } from './blindReports'
 import { opensDeviation, type ToldVerdict } from './deviationRules'
 import { enqueueMail } from './mails'
+import { membersWithRole } from './membersWithRole'
+import { notify } from './notices'
 import { appendRecord, type Actor } from './record'
 
 type DeviationRow = typeof deviation.$inferSelect
@@ -29,10 +29,8 @@ export interface ReleasedVerdicts {
 const DAY = 24 * 60 * 60 * 1000
 
 /** Investigators whom the plan names: one by e-mail address, else whoever holds the role. */
-export async function namedInvestigators(tx: Queryable, studyId: StudyId, email: string | null) {
-  const found = await tx.selectDistinct({ id: person.id, name: person.name, email: person.email })
-    .from(studyMember).innerJoin(person, eq(person.id, studyMember.personId))
-    .where(and(eq(studyMember.studyId, studyId), eq(studyMember.role, 'investigator'), isNull(studyMember.until), isNull(person.deactivatedAt)))
+export async function namedInvestigators(db: Queryable, studyId: StudyId, email: string | null) {
+  const found = await membersWithRole(db, studyId, 'investigator')
   return email === null ? found : found.filter(candidate => candidate.email === email.toLowerCase())
 }
 
@@ -80,6 +78,7 @@ async function extend(tx: Transaction, telling: Telling, row: DeviationRow, { ve
     chain: { studyId }, actor, action: 'deviation.extended', subject: row.id,
     detail: { number: row.number, extract: telling.check.extract.number, verdict: verdict.word, step: verdict.step, reopened: reopens },
   })
+  await notify(tx, { studyId, kind: 'deviation', id: row.id })
 }
 
 /**

@@ -6,8 +6,8 @@ import { memo } from '../database/schema/deviation'
 import { DomainError } from '../domainError'
 import type { MemoKeys } from '../memo/keys'
 import { renderMemo } from '../memo/render'
-import { putBlob, readWholeBlob } from './blobs'
-import { sha256 } from './canonical'
+import { keepBlob, putBlob, readWholeBlob } from './blobs'
+import { sha256 } from '../../shared/record/canonical'
 import { enqueueMail } from './mails'
 import { findMemo, type MemoAddress } from './memos'
 import { membersWithRole } from './membersWithRole'
@@ -28,8 +28,8 @@ async function issue(db: Database, { studyId, memoId }: MemoAddress, pdf: Buffer
   await db.transaction(async (tx) => {
     const [row] = await tx.select().from(memo).where(and(eq(memo.studyId, studyId), eq(memo.id, memoId))).for('update')
     if (!row || row.state === 'issued') return
-    const pdfHash = sha256(pdf)
-    const pdfBlobId = await putBlob(tx, pdf)
+    const { id: pdfBlobId, hash: pdfHash } = await putBlob(tx, pdf)
+    await keepBlob(tx, pdfBlobId)
     await tx.update(memo).set({ state: 'issued', pdfBlobId, pdfHash, issuedAt: sql`now()` }).where(eq(memo.id, memoId))
     for (const { id } of await membersWithRole(tx, studyId, 'monitor')) await enqueueMail(tx, { kind: 'memo-issued', to: id, studyId, memoId })
     await appendRecord(tx, { chain: { studyId }, actor: SYSTEM, action: 'memo.issued', subject: memoId, detail: { number: row.number, pdfHash } })

@@ -1,5 +1,6 @@
 import { and, asc, eq, max } from 'drizzle-orm'
 import type { MemoContent } from '../../shared/memo/content'
+import { canonicalBytes, sha256 } from '../../shared/record/canonical'
 import type { MemoId } from '../../shared/schemas/domainIds'
 import type { StudyId } from '../../shared/schemas/ids'
 import type { Database, Queryable, Transaction } from '../database/client'
@@ -7,10 +8,10 @@ import { newId } from '../database/newId'
 import { onlyRow } from '../database/onlyRow'
 import { deviation, memo, settlement } from '../database/schema/deviation'
 import { DomainError } from '../domainError'
-import { canonicalBytes, sha256 } from './canonical'
+import { enqueue } from '../jobs/enqueue'
 import { deviationFacts } from './deviationFacts'
-import { enqueue } from './jobs'
 import { composeMemo } from './memoContent'
+import { notify } from './notices'
 import { appendRecord } from './record'
 import { sign, signaturesOver, type Credentials } from './signatures'
 import { actorOf, type Viewer } from './viewer'
@@ -134,6 +135,7 @@ export async function signMemo(db: Database, request: SignMemo, now = new Date()
     await appendRecord(tx, {
       chain: { studyId }, actor: actorOf(viewer), action: 'memo.signed', subject: memoId, detail: { number: row.number, contentHash: hash, signature: signatureId },
     })
+    await notify(tx, { studyId, kind: 'memo', id: memoId })
     return summary
   })
 }

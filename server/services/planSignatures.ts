@@ -14,6 +14,7 @@ import { checkRevision, lockDraft } from './planDrafts'
 import { knowledgeOf } from './planKnowledge'
 import { readSignedPlan, type PlanAddress } from './plans'
 import { planView } from './planView'
+import { notify } from './notices'
 import { appendRecord } from './record'
 import { requireSeparation } from './separation'
 import { sign, type Credentials } from './signatures'
@@ -95,6 +96,7 @@ export async function signPlanAsAuthor(db: Database, { studyId, planId, revision
       chain: { studyId }, actor: actorOf(viewer), action: awaits ? 'plan.author-signed' : 'plan.locked', subject: planId,
       detail: { version: row.version, hash, firstSubjectIn: declaration.firstSubjectIn, dataSeen: declaration.dataSeen, marks: row.knowledge?.marks.join(' ') ?? null },
     })
+    await notify(tx, { studyId, kind: 'plan', id: planId })
     return view
   })
 }
@@ -135,6 +137,7 @@ export async function reviewPlan(db: Database, { studyId, planId, decision, reas
       chain: { studyId }, actor: actorOf(viewer), action: decision === 'approve' ? 'plan.locked' : 'plan.returned', subject: planId,
       detail: { version: row.version, hash, reason, marks: row.knowledge?.marks.join(' ') ?? null },
     })
+    await notify(tx, { studyId, kind: 'plan', id: planId })
     return view
   })
 }

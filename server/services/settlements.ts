@@ -8,6 +8,7 @@ import { deviationFacts, handsIn, type DeviationAddress, type DeviationFacts } f
 import type { DeviationState, SettlementKind } from './deviationRules'
 import { allowedNow, viewDeviation } from './deviationViews'
 import { makeMemo } from './memos'
+import { notify } from './notices'
 import { appendRecord } from './record'
 import { requireSeparation } from './separation'
 import { sign, type Credentials } from './signatures'
@@ -65,6 +66,7 @@ export async function settle(db: Database, { kind, note, viewer, identifier, pas
       chain: { studyId }, actor: actorOf(viewer), action: 'deviation.settled', subject: deviationId,
       detail: { number: facts.row.number, kind, note, signature: signatureId },
     })
+    await notify(tx, { studyId, kind: 'deviation', id: deviationId })
     if (LEADS_TO[kind] === 'settled') await makeMemo(tx, { studyId, settlementId: row.id, viewer })
     return viewDeviation(tx, address)
   })
@@ -93,6 +95,7 @@ export async function secondSettlement(db: Database, { viewer, identifier, passw
       chain: { studyId }, actor: actorOf(viewer), action: 'deviation.overruled', subject: deviationId,
       detail: { number: facts.row.number, note: first.note, signature: secondSignatureId },
     })
+    await notify(tx, { studyId, kind: 'deviation', id: deviationId })
     await makeMemo(tx, { studyId, settlementId: first.id, viewer })
     return viewDeviation(tx, address)
   })

@@ -56,11 +56,20 @@ export interface MemoPlan {
   readonly signatures: readonly MemoSignature[]
 }
 
+/** A step of the registered order in words: which, when, and what it relies on itself. */
+export interface MemoStep { readonly head: string, readonly lines: readonly string[] }
+
 export interface MemoAnalysis {
   /** Verbatim from the signed plan. */
   readonly registered: PlannedAnalysis
   /** The same in sentences: what is compared and how, what it relies on, what takes over in which order. */
-  readonly words: { readonly frame: readonly string[], readonly prerequisites: readonly string[], readonly order: readonly string[] }
+  readonly words: {
+    readonly frame: readonly string[]
+    readonly prerequisites: readonly string[]
+    readonly order: readonly MemoStep[]
+    /** What that verdict leads to at the decision point. */
+    readonly notAssessable: string
+  }
   readonly endpoint: { readonly label: string, readonly unit: string }
   readonly analysisSet: string
   /** Planned arms that are compared, by their labels; empty in an analysis without arms. */

@@ -2,24 +2,14 @@ import type { Content, TableCell } from 'pdfmake/interfaces'
 import type { Figure, SeenPrerequisite } from '../../../shared/decision/report'
 import type { MemoContent } from '../../../shared/memo/content'
 import { heading, paragraph, ruledTable } from '../blocks'
+import { figureWords } from '../figureWords'
 import { marked } from '../marks'
 import { plain } from '../styles'
 import { reasonWords } from '../terms'
-import { count, measured, pValue, registered, type Say } from '../words'
+import { count, measured, registered, type Say } from '../words'
 
 /** Where a figure was taken, how many values it rests on, and what it was held against. */
 interface Line { readonly sample: string, readonly n: string, readonly figure: string, readonly limit: string }
-
-function figureWords(figure: Figure, say: Say): string {
-  if (figure.value === null) return say('memo.figures.undefined', { measure: say(`memo.measure.${figure.measure}`) })
-  const value = say('memo.figures.value', { measure: say(`memo.measure.${figure.measure}`), value: measured(figure.measure, figure.value) })
-  const interval = figure.lower === null || figure.upper === null
-    ? ''
-    : say('memo.figures.interval', { lower: measured(figure.measure, figure.lower), upper: measured(figure.measure, figure.upper) })
-  const p = figure.adjustedP ?? figure.pValue
-  const probability = p === null ? '' : `, ${pValue(p)}${figure.adjustedP === null ? '' : ` ${say('memo.figures.adjusted')}`}`
-  return value + interval + probability
-}
 
 function limitWords({ limit, pValue: p, measure }: Figure, say: Say): string {
   if (limit === null) return say('memo.figures.reported')

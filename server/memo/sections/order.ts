@@ -5,7 +5,7 @@ import type { SeenStep } from '../../../shared/decision/report'
 import type { MemoContent } from '../../../shared/memo/content'
 import { heading, paragraph } from '../blocks'
 import { INK } from '../styles'
-import { reasonWords, stepName } from '../terms'
+import { reasonWords, stepHead } from '../terms'
 import type { Say } from '../words'
 import { prerequisiteTable } from './findings'
 
@@ -27,7 +27,7 @@ function stepBlock(step: SeenStep, memo: MemoContent, say: Say): Content[] {
       unbreakable: true,
       margin: [0, 5, 0, 2],
       stack: [
-        { text: [{ text: stepName(memo.analysis.registered, step.step, say), bold: true, ...(applies ? { color: INK.ochre } : {}) }, `: ${outcomeWords(step, memo, say)}`] },
+        { text: [{ text: stepHead(memo.analysis.registered, step.step, say), bold: true, ...(applies ? { color: INK.ochre } : {}) }, `: ${outcomeWords(step, memo, say)}`] },
         { text: [say('memo.step.measure', { measure: say(`plan.measures.${step.summaryMeasure}`) }), ' ', ...change], style: 'small' },
       ],
     },
@@ -35,20 +35,22 @@ function stepBlock(step: SeenStep, memo: MemoContent, say: Say): Content[] {
   ]
 }
 
+/** What the analysis estimates after the walk, and whether that is what was planned. */
+function questionWords({ verdict, analysis: { registered } }: MemoContent, say: Say): string {
+  if (verdict.word === 'no-registered-method') return say('memo.order.exhausted')
+  return say(verdict.changesQuestion ? 'memo.order.changed' : 'memo.order.kept', { planned: say(`plan.measures.${registered.summaryMeasure}`) })
+}
+
 /** The registered order walked: which step applies, and why each earlier one does not. */
 export function orderSection(memo: MemoContent, say: Say): Content[] {
-  const { judged, verdict, analysis: { registered } } = memo
+  const { judged, verdict } = memo
   const setAside = verdict.setAside === null
     ? []
     : [paragraph(say('memo.order.setAside', { reason: reasonWords(verdict.setAside, say) }))]
-  const question = verdict.changesQuestion
-    ? say('memo.order.changed', { planned: say(`plan.measures.${registered.summaryMeasure}`) })
-    : say('memo.order.kept', { planned: say(`plan.measures.${registered.summaryMeasure}`) })
   return [
     heading(say('memo.heading.order')),
     ...(judged.steps.length === 0 ? [paragraph(say('memo.order.noSteps'))] : judged.steps.flatMap(step => stepBlock(step, memo, say))),
     ...setAside,
-    ...(verdict.word === 'no-registered-method' ? [paragraph(say('memo.order.exhausted'))] : []),
-    { text: question, margin: [0, 6, 0, 0] },
+    paragraph(questionWords(memo, say)),
   ]
 }

@@ -5,6 +5,7 @@ import { quantilePlot } from '../../../shared/figures/quantilePlot'
 import { toSvg } from '../../../shared/figures/toSvg'
 import type { MemoContent } from '../../../shared/memo/content'
 import { subheading } from '../blocks'
+import { figureWords } from '../figureWords'
 import { TEXT_WIDTH } from '../styles'
 import { count, type Say } from '../words'
 
@@ -21,6 +22,11 @@ function pair(plot: PlotData, memo: MemoContent, say: Say): Content {
   return { columns: [bars, dots].map(figure => ({ svg: toSvg(figure, FRAME), width: FRAME.width })), columnGap: GAP }
 }
 
+function caption({ judged: { plot, proxy } }: MemoContent, shown: PlotData, say: Say): string {
+  if (plot !== null || proxy === null) return say('memo.figure.judged', { count: count(shown.counts.reduce((sum, bin) => sum + bin, 0)) })
+  return say('memo.figure.proxy', { count: count(proxy.n), figures: proxy.figures.map(figure => figureWords(figure, say)).join('; ') })
+}
+
 /**
  * The plot of the judged quantity where this edition may show it, else that of the arm-free proxy, which
  * decides nothing and says so.
@@ -29,12 +35,11 @@ export function picturesSection(memo: MemoContent, say: Say): Content[] {
   const { plot, proxy } = memo.judged
   const shown = plot ?? proxy?.plot
   if (!shown) return []
-  const n = proxy && !plot ? proxy.n : shown.counts.reduce((sum, bin) => sum + bin, 0)
   return [{
     unbreakable: true,
     stack: [
       subheading(say(plot ? 'memo.heading.plot' : 'memo.heading.proxy')),
-      { text: say(plot ? 'memo.figure.judged' : 'memo.figure.proxy', { count: count(n) }), style: 'small', margin: [0, 0, 0, 4] },
+      { text: caption(memo, shown, say), style: 'small', margin: [0, 0, 0, 4] },
       pair(shown, memo, say),
     ],
   }]

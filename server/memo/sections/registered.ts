@@ -1,5 +1,5 @@
 import type { Content } from 'pdfmake/interfaces'
-import type { MemoContent } from '../../../shared/memo/content'
+import type { MemoContent, MemoStep } from '../../../shared/memo/content'
 import { facts, hashText, heading, paragraph, signatureRows, subheading } from '../blocks'
 import { INK } from '../styles'
 import { dateWords, momentWords, type Say } from '../words'
@@ -11,21 +11,25 @@ function declarationWords({ declaration }: MemoContent['plan'], say: Say): Conte
   return `${subject} ${say(`memo.declaration.seen.${dataSeen}`)}`
 }
 
-const list = (kind: 'ul' | 'ol', lines: readonly string[]): Content => {
-  const items = lines.map(text => ({ text, margin: [0, 0, 0, 1.5] as [number, number, number, number] }))
-  return kind === 'ul' ? { ul: items, markerColor: INK.soft } : { ol: items, markerColor: INK.soft }
-}
+const MARGIN: [number, number, number, number] = [0, 0, 0, 1.5]
+
+const list = (lines: readonly string[]): Content => ({ ul: lines.map(text => ({ text, margin: MARGIN })), markerColor: INK.soft })
+
+const stepBlock = ({ head, lines }: MemoStep): Content => ({ stack: [{ text: head, bold: true, margin: [0, 3, 0, 1] }, { ...marginLeft, stack: [list(lines)] }] })
+
+const marginLeft = { margin: [10, 0, 0, 0] as [number, number, number, number] }
 
 /** The planned analysis as signed, and the proof of when it was signed. */
 export function registeredSection(memo: MemoContent, say: Say): Content[] {
   const { plan, analysis } = memo
   return [
     heading(say('memo.heading.registered')),
-    list('ul', analysis.words.frame),
+    list(analysis.words.frame),
     subheading(say('memo.heading.prerequisites')),
-    list('ul', analysis.words.prerequisites),
+    list(analysis.words.prerequisites),
     subheading(say('memo.heading.steps')),
-    list('ol', analysis.words.order),
+    ...analysis.words.order.map(stepBlock),
+    { text: analysis.words.notAssessable, margin: [0, 3, 0, 0] },
     subheading(say('memo.heading.plan')),
     facts([
       [say('memo.fact.planSigned'), momentWords(plan.signedAt, say)],

@@ -99,7 +99,7 @@ describe('toSvg', () => {
     fc.assert(fc.property(fc.array(finite, { minLength: 1, maxLength: 30 }), (values) => {
       const sorted = [...values].sort((a, b) => a - b)
       const quantiles = sorted.map((value, index) => ({ theoretical: index - sorted.length / 2, value, lower: value - 1, upper: value + 1 }))
-      const svg = toSvg(quantilePlot({ unit: '1', edges: [0, 1], counts: [1], fitted: null, quantiles }, dotWords), frame)
+      const svg = toSvg(quantilePlot({ ...plot, unit: '1', edges: [0, 1], counts: [1], fitted: null, quantiles }, dotWords), frame)
       expect(svg).not.toMatch(/NaN|Infinity/)
     }))
   })
