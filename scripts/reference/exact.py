@@ -122,6 +122,45 @@ def normal_log_cdf(z):
     return mp.log1p(-mp.ncdf(-mpf(z))) if z > 0 else mp.log(mp.ncdf(mpf(z)))
 
 
+MASK = 2 ** 64 - 1
+
+
+def split_mix_64(seed, count):
+    """S. Vigna's splitmix64.c."""
+    numbers = []
+    for _ in range(count):
+        seed = (seed + 0x9E3779B97F4A7C15) & MASK
+        z = ((seed ^ (seed >> 30)) * 0xBF58476D1CE4E5B9) & MASK
+        z = ((z ^ (z >> 27)) * 0x94D049BB133111EB) & MASK
+        numbers.append(z ^ (z >> 31))
+    return numbers
+
+
+def rotate(x, k):
+    return ((x << k) | (x >> (64 - k))) & MASK
+
+
+def uniforms(seed, count):
+    """xoshiro256** 1.0 (Blackman & Vigna) seeded through SplitMix64; the upper 53 bits over 2^53."""
+    s = split_mix_64(seed, 4)
+    numbers = []
+    for _ in range(count):
+        numbers.append(((rotate(s[1] * 5 & MASK, 7) * 9 & MASK) >> 11) / 2 ** 53)
+        t = s[1] << 17 & MASK
+        s[2] ^= s[0]
+        s[3] ^= s[1]
+        s[1] ^= s[2]
+        s[0] ^= s[3]
+        s[2] ^= t
+        s[3] = rotate(s[3], 45)
+    return numbers
+
+
+def stream(seed):
+    u = uniforms(seed, 12)
+    return {"seed": seed, "uniform": u, "normal": [float(normal_quantile(mpf(v))) for v in u], "exponential": [float(-mp.log(mpf(v))) for v in u]}
+
+
 OFFSET = [1e9 + value / 1000 for value in bell(40)]
 OFFSET_GROUPS = [[1e9 + value / 1000 for value in bell(9)], [1e9 + value / 300 for value in bell(14)], [1e9 + value / 500 for value in bell(6)]]
 TAILS = [(x, df1, df2) for df1, df2 in ((1, 8), (2, 27), (9, 90), (59, 6), (499, 498)) for x in (0.01, 0.9, 1.5, 4.8, 60, 1e4)]
@@ -140,6 +179,7 @@ content = {
     "normalLogCdf": [{"z": z, "value": float(normal_log_cdf(z))} for z in LOG_CDF],
     "normalQuantiles": [{"p": p, "z": float(far_normal_quantile(p))} for p in (1e-300, 1e-100, 1e-20, 1e-6, 0.025, 0.3)],
     "andersonDarling": [{"shape": "heavy", "n": 300, "a": anderson_darling(HEAVY)}, {"shape": "bell", "n": 500, "a": anderson_darling(bell(500))}],
+    "random": [stream(seed) for seed in (0, 1, 20261201, 2 ** 53 - 1)],
     "shapiroWilkThree": [
         # Exact for n = 3, Shapiro & Wilk (1965): W = (x3 - x1)^2 / (2 SS), p = (6/pi)(asin sqrt W - asin sqrt(3/4)).
         {"values": values, **(lambda w: {"w": float(w), "p": float(6 / mp.pi * (mp.asin(mp.sqrt(w)) - mp.asin(mp.sqrt(mpf(3) / 4))))})(

@@ -26,7 +26,8 @@ own <- list(
   case("insect-sprays-residuals", from_r("InsectSprays"), residuals_of(split(InsectSprays$count, InsectSprays$spray))),
   case("three-even", "equally spaced", c(1, 2, 3)),
   case("three-uneven", "p near its least value", c(1, 2, 9)),
-  case("beyond-domain", "nine equal values and one far away: AS R94 answers 1e-99", c(rep(0, 9), 1e6))
+  case("one-apart-of-four", "least W of four values", c(0, 0, 0, 1)),
+  case("one-apart-of-eleven", "least W of eleven values", c(rep(0, 10), 1))
 )
 
 lattice <- unlist(lapply(names(LATTICE), function(shape) lapply(SIZES, function(n) {

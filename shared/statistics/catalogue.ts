@@ -14,20 +14,20 @@ export interface ProcedureEntry {
   readonly source: string
 }
 
-const entry = (file: string, id: string, source: string, least: number, most: number | null = null): ProcedureEntry =>
-  ({ file, nameKey: `statistics.${id}`, source, least, most })
+const entry = (file: string, nameKey: string, source: string, least: number, most: number | null = null): ProcedureEntry =>
+  ({ file, nameKey, source, least, most })
 
 /** Every procedure that judges; descriptive helpers have their section in docs/statistics.md alone. */
 export const PROCEDURES = {
-  'shapiro-wilk': entry('normality/shapiroWilk', 'shapiro-wilk', 'royston1995', SHAPIRO_WILK_RANGE.least, SHAPIRO_WILK_RANGE.most),
-  'anderson-darling': entry('normality/andersonDarling', 'anderson-darling', 'stephens1986', ANDERSON_DARLING_LEAST),
-  'skewness': entry('descriptive/skewness', 'skewness', 'joanes1998', 3),
-  'excess-kurtosis': entry('descriptive/excessKurtosis', 'excess-kurtosis', 'joanes1998', 4),
-  'brown-forsythe': entry('spread/brownForsythe', 'brown-forsythe', 'brown1974', 2),
-  'sd-ratio': entry('spread/sdRatio', 'sd-ratio', 'snedecor1989', 2),
-  'not-positive': entry('descriptive/notPositive', 'not-positive', 'boxcox1964', 1),
-  'bonferroni': entry('multiplicity/bonferroni', 'bonferroni', 'dunn1961', 1),
-  'holm': entry('multiplicity/holm', 'holm', 'holm1979', 1),
+  'shapiro-wilk': entry('normality/shapiroWilk', 'plan.describe.procedures.shapiro-wilk', 'royston1995', SHAPIRO_WILK_RANGE.least, SHAPIRO_WILK_RANGE.most),
+  'anderson-darling': entry('normality/andersonDarling', 'plan.describe.procedures.anderson-darling', 'stephens1986', ANDERSON_DARLING_LEAST),
+  'skewness': entry('descriptive/skewness', 'verdict.measure.skewness', 'joanes1998', 3),
+  'excess-kurtosis': entry('descriptive/excessKurtosis', 'verdict.measure.excess-kurtosis', 'joanes1998', 4),
+  'brown-forsythe': entry('spread/brownForsythe', 'plan.describe.procedures.brown-forsythe', 'brown1974', 2),
+  'sd-ratio': entry('spread/sdRatio', 'verdict.measure.sd-ratio', 'snedecor1989', 2),
+  'not-positive': entry('descriptive/notPositive', 'verdict.measure.not-positive', 'boxcox1964', 1),
+  'bonferroni': entry('multiplicity/bonferroni', 'plan.adjustments.bonferroni', 'dunn1961', 1),
+  'holm': entry('multiplicity/holm', 'plan.adjustments.holm', 'holm1979', 1),
 } as const satisfies Record<string, ProcedureEntry>
 
 export type ProcedureId = keyof typeof PROCEDURES

@@ -48,7 +48,7 @@ function shownRanks(n: number): number[] {
  * @param sample n ≥ 2 finite values; not modified.
  * @throws {InvalidSampleError} `sample-too-small`, `non-finite-value` (also where the spread overflows).
  *
- * Sources: Blom (1958), Statistical Estimates and Transformed Beta-Variables, section 6.9; David & Nagaraja
+ * Sources: Blom (1958), Statistical Estimates and Transformed Beta-Variables; David & Nagaraja
  * (2003), Order Statistics, 3rd edition, section 2.1, for the distribution.
  */
 export function normalQuantilePlot(sample: Sample): QuantilePoint[] {

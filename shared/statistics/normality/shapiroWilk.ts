@@ -21,8 +21,6 @@ const SMALL_MEAN = [0.544, -0.39978, 0.025054, -6.714e-4] as const
 const SMALL_LN_SD = [1.3822, -0.77857, 0.062767, -0.0020322] as const
 const LARGE_MEAN = [-1.5861, -0.31082, -0.083751, 0.0038915] as const
 const LARGE_LN_SD = [-0.4803, -0.082676, 0.0030302] as const
-/** What AS R94 answers where the transformation for n ≤ 11 leaves its domain. */
-const BEYOND_DOMAIN = 1e-99
 const SIX_OVER_PI = 1.909859317102744
 
 /**
@@ -39,9 +37,8 @@ function pValueOf(complement: number, n: number): number {
   if (n === 3) return pValueOfThree(complement)
   const y = ln(complement)
   if (n <= 11) {
-    const gamma = polynomial(GAMMA, n)
-    if (y >= gamma) return BEYOND_DOMAIN
-    return normalSf((-ln(gamma - y) - polynomial(SMALL_MEAN, n)) / exp(polynomial(SMALL_LN_SD, n)))
+    // γ − y is positive: even at the least possible W, n·a_n²/(n − 1), ln(1 − W) stays below γ for these n.
+    return normalSf((-ln(polynomial(GAMMA, n) - y) - polynomial(SMALL_MEAN, n)) / exp(polynomial(SMALL_LN_SD, n)))
   }
   const x = ln(n)
   return normalSf((y - polynomial(LARGE_MEAN, x)) / exp(polynomial(LARGE_LN_SD, x)))
@@ -104,8 +101,7 @@ export function shapiroWilkKernel(values: Float64Array, start: number, end: numb
  *
  * W = (Σ a_i x_(i))² / Σ(x − mean)² over the order statistics x_(i), with Royston's approximate weights a_i;
  * W ≤ 1, small W speaks against. p is exact for n = 3 and comes from a normalising transformation of 1 − W
- * with separate polynomials for 4 ≤ n ≤ 11 and n ≥ 12. For n ≤ 11 a W beyond the transformation's domain
- * has p = 1e-99, as published.
+ * with separate polynomials for 4 ≤ n ≤ 11 and n ≥ 12.
  *
  * @param sample 3 ≤ n ≤ 5000 finite values in one unit; not modified.
  * @returns W (dimensionless) and p.

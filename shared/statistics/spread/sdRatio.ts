@@ -86,7 +86,7 @@ export function sdRatioKernel(values: Float64Array, offsets: Uint32Array, worksp
  *   any group is constant.
  *
  * Invariant under x → a_i + b·x, b ≠ 0, with a shift of its own per group.
- * Source for the limits: Snedecor & Cochran (1989), Statistical Methods, 8th edition, section 6.12.
+ * Source for the limits: Snedecor & Cochran (1989), Statistical Methods, 8th edition.
  */
 export function sdRatio(groups: readonly Sample[]): SdRatio {
   const { values, offsets } = checkGroups(groups, { groups: 2, size: 2 })
