@@ -3,10 +3,11 @@ import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
 import type { DeviationId, ExtractId, MemoId } from '#shared/schemas/domainIds'
 import { deviation, memo } from '../../../server/database/schema/deviation'
 import { study } from '../../../server/database/schema/study'
+import { acknowledge } from '../../../server/services/acknowledgements'
 import { breakBlind, fixMethod, listEvents, lockDatabase, unlockDatabase } from '../../../server/services/events'
 import { withdrawExtract } from '../../../server/services/extracts'
 import { readLedger } from '../../../server/services/ledger'
-import { signMemo } from '../../../server/services/memos'
+import { readMemo, signMemo } from '../../../server/services/memos'
 import { previewRelease, signRelease } from '../../../server/services/releases'
 import { settle } from '../../../server/services/settlements'
 import { freshDatabase, type TestDatabase } from '../../helpers/database'
@@ -83,8 +84,11 @@ describe('method fixed', () => {
     const at = { studyId: own.studyId, deviationId: opened!.id as DeviationId }
     await settle(database.db, { ...at, kind: 'accept-step', note: 'As registered.', ...await own.signing('biostatistician') })
     expect(await refusalOf(fix())).toMatchObject({ errors: [{ code: 'deviation-not-settled' }] })
+    await acknowledge(database.db, { ...at, decision: 'acknowledged', comment: null, ...await own.signing('investigator') })
     const [written] = await database.db.select().from(memo).where(eq(memo.studyId, own.studyId))
-    await signMemo(database.db, { studyId: own.studyId, memoId: written!.id as MemoId, contentHash: written!.contentHash, ...await own.signing('biostatistician') })
+    const memoAt = { studyId: own.studyId, memoId: written!.id as MemoId }
+    const { contentHash } = await readMemo(database.db, memoAt)
+    await signMemo(database.db, { ...memoAt, contentHash, ...await own.signing('biostatistician') })
 
     expect(await fix()).toMatchObject({ kind: 'method-fixed', extract: { id: extractId } })
     expect(await refusalOf(fix())).toMatchObject({ code: 'already-done' })
