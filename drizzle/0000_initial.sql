@@ -328,7 +328,7 @@ CREATE TABLE "signature" (
 	"name" text NOT NULL,
 	"role" text NOT NULL,
 	"meaning" text NOT NULL,
-	"subject" text NOT NULL,
+	"subject" uuid NOT NULL,
 	"hash" text NOT NULL,
 	"reason" text,
 	"request_id" text NOT NULL,

@@ -51,7 +51,7 @@ export const signature = pgTable('signature', {
   role: text('role').notNull(),
   meaning: text('meaning').notNull(),
   /** Id of what was signed. */
-  subject: text('subject').notNull(),
+  subject: uuid('subject').notNull(),
   hash: text('hash').notNull(),
   reason: text('reason'),
   requestId: text('request_id').notNull(),
