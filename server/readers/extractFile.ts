@@ -9,11 +9,15 @@ import { completeMapping, headerFaults, suggestMapping, type SuggestedMapping } 
 
 /** Rows shown before a mapping is confirmed. */
 const PREVIEW_ROWS = 20
+/** Rows looked at to tell what a column holds. */
+const SAMPLE_ROWS = 2000
 
 export interface FileHead {
   readonly header: readonly string[]
   readonly delimiter: Delimiter
-  /** The first rows as they stand, without the header. */
+  /** The first rows as they stand, without the header; as many as the beginning of the file holds. */
+  readonly sample: readonly (readonly string[])[]
+  /** The few of them that are shown to a person. */
   readonly preview: readonly (readonly string[])[]
 }
 
@@ -22,7 +26,7 @@ async function firstRows({ rows }: CsvFile): Promise<string[][]> {
   try {
     for await (const { cells } of rows) {
       taken.push([...cells])
-      if (taken.length === PREVIEW_ROWS) break
+      if (taken.length === SAMPLE_ROWS) break
     }
   }
   catch (error) {
@@ -45,7 +49,8 @@ export async function readHead(bytes: Uint8Array, whole: boolean): Promise<FileH
   const lines = whole ? bytes : bytes.subarray(0, bytes.lastIndexOf(0x0A) + 1)
   try {
     const file = await openCsv(only(lines))
-    return { header: file.header, delimiter: file.delimiter, preview: await firstRows(file) }
+    const sample = await firstRows(file)
+    return { header: file.header, delimiter: file.delimiter, sample, preview: sample.slice(0, PREVIEW_ROWS) }
   }
   catch (error) {
     if (!(error instanceof UnreadableFile)) throw error
@@ -62,8 +67,8 @@ export interface MappingProposal {
 }
 
 /** What the header and first rows tell about which column is what. */
-export function proposeMapping(plan: Plan, { header, preview }: Pick<FileHead, 'header' | 'preview'>, remembered: ColumnMapping | null): MappingProposal {
-  const suggested = suggestMapping(plan, header, preview, remembered)
+export function proposeMapping(plan: Plan, { header, sample }: Pick<FileHead, 'header' | 'sample'>, remembered: ColumnMapping | null): MappingProposal {
+  const suggested = suggestMapping(plan, header, sample, remembered)
   const refused = headerFaults(plan, header, suggested)
     .map(({ code, column }): Finding => ({ severity: 'refuse', code, row: 1, column, params: {} }))
   return { suggested, complete: refused.length > 0 ? null : completeMapping(plan, suggested), refused }

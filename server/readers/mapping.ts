@@ -53,11 +53,16 @@ function findUnit(find: Find, header: readonly string[], rows: readonly (readonl
   return texts.length > 0 && texts.every(text => unitInText(text) !== null) ? parameter : null
 }
 
-/** A column that names arms of the plan in every row at hand. */
+/** The column whose cells are arms of the plan, as most of them must be; a cell that is none is found when the file is read. */
 function findArm(find: Find, header: readonly string[], rows: readonly (readonly string[])[], arms: readonly Arm[]): string | null {
   const names = new Set(arms.flatMap(({ id, label }) => [id, label]))
-  const candidates = ADAM.arm.map(find).filter(column => column !== null)
-  return candidates.find(column => cellsOf(header, rows, column).every(cell => names.has(cell))) ?? null
+  const shareOf = (column: string): number => {
+    const cells = cellsOf(header, rows, column)
+    return cells.length === 0 ? 0 : cells.filter(cell => names.has(cell)).length / cells.length
+  }
+  const candidates = ADAM.arm.map(find).filter(column => column !== null).map(column => ({ column, share: shareOf(column) }))
+  const best = candidates.reduce((most, each) => each.share > most.share ? each : most, { column: null as string | null, share: 0.5 })
+  return best.column
 }
 
 const findFlags = (find: Find, needed: readonly string[]): Record<string, string> =>

@@ -56,7 +56,7 @@ async function takeIn(db: Database, plan: SignedPlan, { source, viewer }: Upload
   const { head: beginning, whole, all } = await peek(source)
   const head = await readHead(beginning, whole)
   const isProtected = protects(plan, viewer)
-  const treatment = isProtected && head ? findTreatmentColumn(head.header, head.preview, plan.document.arms) : null
+  const treatment = isProtected && head ? findTreatmentColumn(head.header, head.sample, plan.document.arms) : null
   const sealed = treatment !== null || (isProtected && head === null)
   if (!sealed) return { blob: await putBlob(db, all), head, treatment, commitment: null }
   const { bytes, commitment } = committed(all)

@@ -82,7 +82,7 @@ function offered(document: Plan, suggested: SuggestedMapping): SuggestedMapping 
 
 async function suggestionFor(db: Queryable, { state, columns, preview, studyId }: ExtractRow, document: Plan): Promise<SuggestedMapping | null> {
   if (state !== 'awaiting-mapping') return null
-  const { suggested } = proposeMapping(document, { header: columns, preview: preview ?? [] }, await rememberedMapping(db, studyId))
+  const { suggested } = proposeMapping(document, { header: columns, sample: preview ?? [] }, await rememberedMapping(db, studyId))
   return offered(document, suggested)
 }
 

@@ -48,7 +48,9 @@ function seenStep(step: StepReport, verdict: VerdictReport | null, telling: Tell
 function blindedAnalysis(analysis: AnalysisReport, released: boolean, { namesFailed }: ReleaseState): SeenAnalysis {
   const { armFreeVerdict, ...rest } = analysis
   const told = armFreeVerdict ?? (released ? analysis.verdict : null)
-  const telling: Telling = told === null ? 'nothing' : released && namesFailed ? 'named' : 'word'
+  // An arm-free cause is told without a release, so nothing formed with arms is named beside it.
+  const names = namesFailed && released && armFreeVerdict === null
+  const telling: Telling = told === null ? 'nothing' : names ? 'named' : 'word'
   return {
     ...rest,
     verdict: told ?? HELD,
