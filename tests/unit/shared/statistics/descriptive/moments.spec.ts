@@ -26,6 +26,12 @@ describe('mean, variance, standardDeviation', () => {
     expect(variance([1e9 + 4, 1e9 + 7, 1e9 + 13, 1e9 + 16])).toBe(30)
   })
 
+  it('do not gather rounding over many values', () => {
+    const sample = [0, ...new Array<number>(99999).fill(0.1)]
+    expect(mean(sample)).toBeWithinRelative(0.099999, 1e-15)
+    expect(variance(sample)).toBeWithinRelative(1e-7, 1e-11)
+  })
+
   it('reach sizes whose squares overflow or vanish', () => {
     expect(standardDeviation([-1e200, 1e200])).toBeWithinRelative(Math.SQRT2 * 1e200, 1e-15)
     expect(standardDeviation([0, 1e-200])).toBeWithinRelative(Math.SQRT1_2 * 1e-200, 1e-15)

@@ -64,6 +64,7 @@ describe('brownForsythe', () => {
   it.each([
     ['two values in each group', [[1.1, 2.3], [0.7, 9.4], [5.2, 5.9]]],
     ['pairs of equal decimals', [[0.1, 0.1, 0.3, 0.3], [1.1, 1.1, 1.4, 1.4]]],
+    ['six distances of 0.1, whose mean rounds', [[0, 0, 0, 0.2, 0.2, 0.2], [5, 5, 5, 5, 5.2, 5.2, 5.2, 5.2]]],
     ['two values and a constant group', [[0.3, 0.9], [3.7, 3.7, 3.7]]],
   ])('refuses %s: distances within groups are equal, only rounding is left', (_, groups) => {
     expect(() => brownForsythe(groups)).toThrow(expect.objectContaining({ code: 'zero-spread' }))
