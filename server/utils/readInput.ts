@@ -10,7 +10,9 @@ const JSON_LIMIT = 2 * 1024 * 1024
 
 export interface Input { readonly params: unknown, readonly query: unknown, readonly body: unknown }
 
+/** Nothing is read of a GET: it has no body, and a page's own request during rendering has no stream to read. */
 async function readJson(event: H3Event): Promise<unknown> {
+  if (event.method === 'GET') return undefined
   const chunks: Buffer[] = []
   let size = 0
   for await (const chunk of event.node.req as AsyncIterable<Buffer>) {
