@@ -27,9 +27,9 @@ export const signatureView = z.strictObject({
 export type SignatureView = z.infer<typeof signatureView>
 
 /** NUL, which no text of the database can hold, and halves of surrogate pairs, which no hash can cover. */
-const UNSTORABLE = /\u0000|\p{Surrogate}/u
+const unstorable = (text: string) => text.includes('\u0000') || /\p{Surrogate}/u.test(text)
 
-const prose = (text: z.ZodString) => text.refine(words => !UNSTORABLE.test(words), 'control-character').transform(words => words.normalize('NFC'))
+const prose = (text: z.ZodString) => text.refine(words => !unstorable(words), 'control-character').transform(words => words.normalize('NFC'))
 
 export const reasonText = prose(z.string().trim().min(3, 'too-short').max(2000, 'too-long'))
 /** What somebody may add; empty when they add nothing. */
