@@ -2,8 +2,7 @@
 export type Sample = ArrayLike<number>
 
 /** Closed list of the reasons for which a procedure is undefined for a sample. */
-export const SAMPLE_PROBLEMS = ['too-few-groups', 'sample-too-small', 'sample-too-large', 'non-finite-value', 'zero-spread'] as const
-export type SampleProblem = typeof SAMPLE_PROBLEMS[number]
+export type SampleProblem = 'too-few-groups' | 'sample-too-small' | 'sample-too-large' | 'non-finite-value' | 'zero-spread'
 
 /** A test of a hypothesis; `pValue` is the probability, under it, of a statistic at least as extreme. */
 export interface TestResult {
@@ -18,14 +17,11 @@ export interface FTestResult extends TestResult {
   readonly df2: number
 }
 
-/** A size with two-sided 95 % confidence limits. */
-export interface Estimate {
+/** A moment with its two-sided 95 % confidence limits. */
+export interface MomentEstimate {
   readonly value: number
   readonly lower: number
   readonly upper: number
-}
-
-export interface MomentEstimate extends Estimate {
   readonly standardError: number
   readonly n: number
 }

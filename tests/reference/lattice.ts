@@ -5,7 +5,7 @@
 const uniform = (n: number, multiplier: number) =>
   Array.from({ length: n }, (_, index) => (((index + 1) * multiplier) % 10007 + 0.5) / 10007)
 
-export const LATTICE: Readonly<Record<string, (n: number) => number[]>> = {
+const LATTICE: Readonly<Record<string, (n: number) => number[]>> = {
   uniform: n => uniform(n, 3571),
   skewed: n => uniform(n, 4241).map(u => u / (1.02 - u)),
   heavy: n => uniform(n, 2609).map((u) => {

@@ -16,7 +16,7 @@ export interface AndersonDarlingResult extends TestResult {
 }
 
 /** A² for a sample of n, adjusted for its size: D'Agostino & Stephens (1986), table 4.7. */
-export function adjustedForSize(statistic: number, n: number): number {
+function adjustedForSize(statistic: number, n: number): number {
   return statistic * (1 + 0.75 / n + 2.25 / (n * n))
 }
 
