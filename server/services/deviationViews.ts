@@ -58,7 +58,7 @@ async function summaryOf(db: Queryable, facts: DeviationFacts, now: Date) {
     state: row.state,
     deviationClass: classOf(entries.map(({ entry }) => entry.verdict.word), isOverruled(facts)),
     verdict: newest.entry.verdict,
-    stepLabel: stepLabel(registered.fallbacks, newest.entry.verdict),
+    stepLabel: stepLabel(registered, newest.entry.verdict),
     binding: newest.extract.id === facts.bindingExtract,
     openedAt: row.openedAt,
     acknowledgement: await acknowledgementView(db, facts, now),
@@ -89,9 +89,9 @@ async function settlementView(db: Queryable, studyId: StudyId, row: SettlementRo
   }
 }
 
-const entryView = ({ entry: { verdict, releasedAt }, extract }: DeviationFacts['entries'][number], { check: { plan: { document } } }: DeviationFacts, fallbacks: readonly Fallback[]) => ({
+const entryView = ({ entry: { verdict, releasedAt }, extract }: DeviationFacts['entries'][number], { check: { plan: { document } } }: DeviationFacts, registered: PlannedAnalysis) => ({
   extract: { id: extract.id, number: extract.number, title: extractTitle(extract, document), cutOff: extract.cutOff },
-  verdict, stepLabel: stepLabel(fallbacks, verdict), releasedAt,
+  verdict, stepLabel: stepLabel(registered, verdict), releasedAt,
 })
 
 /** What may be settled, by the newest verdict and the events of the study. */
@@ -114,7 +114,7 @@ export async function viewDeviation(db: Queryable, address: DeviationAddress, no
     ...await summaryOf(db, facts, now),
     planVersion: plan.version,
     planHash: plan.hash,
-    entries: facts.entries.map(entry => entryView(entry, facts, registered.fallbacks)),
+    entries: facts.entries.map(entry => entryView(entry, facts, registered)),
     failed: failedPrerequisites(facts),
     planned: { method: registered.method, summaryMeasure: registered.summaryMeasure },
     settlements: await Promise.all(facts.settlements.map(row => settlementView(db, address.studyId, row))),

@@ -94,7 +94,7 @@ export function checkRevision({ revision }: { readonly revision: number }, expec
 
 export interface SavePlan extends PlanAddress {
   readonly revision: number
-  readonly document: unknown
+  readonly document?: unknown
   readonly viewer: Viewer
 }
 
