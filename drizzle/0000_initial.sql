@@ -270,7 +270,6 @@ CREATE TABLE "person" (
 	"installation_role" "installation_role",
 	"created_at" timestamp (3) with time zone DEFAULT now() NOT NULL,
 	"deactivated_at" timestamp (3) with time zone,
-	"signing_suspended_at" timestamp (3) with time zone,
 	CONSTRAINT "person_email_unique" UNIQUE("email"),
 	CONSTRAINT "person_email_lower_case" CHECK ("person"."email" = lower("person"."email"))
 );

@@ -20,7 +20,6 @@ const view = {
   installationRole: person.installationRole,
   createdAt: person.createdAt,
   deactivatedAt: person.deactivatedAt,
-  signingSuspendedAt: person.signingSuspendedAt,
   /** Whether the invitation has been taken up. */
   ready: sql<boolean>`${person.passwordHash} is not null`,
 }

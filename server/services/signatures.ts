@@ -31,11 +31,11 @@ interface Signing extends Credentials {
 type Signed = { readonly hash: string } | { readonly content: unknown }
 
 async function reauthenticate(tx: Transaction, { viewer, identifier, password }: Signing): Promise<void> {
-  const [row] = await tx.select({ email: person.email, passwordHash: person.passwordHash, deactivatedAt: person.deactivatedAt, suspendedAt: person.signingSuspendedAt })
+  const [row] = await tx.select({ email: person.email, passwordHash: person.passwordHash, deactivatedAt: person.deactivatedAt })
     .from(person).where(eq(person.id, viewer.person.id))
   const same = await verifyPassword(row?.passwordHash ?? null, password)
   const own = row?.email === identifier.trim().toLowerCase()
-  if (!row || !same || !own || row.deactivatedAt !== null || row.suspendedAt !== null) throw new DomainError('signature-refused')
+  if (!row || !same || !own || row.deactivatedAt !== null) throw new DomainError('signature-refused')
 }
 
 /**

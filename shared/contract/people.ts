@@ -12,7 +12,6 @@ export const personAccount = z.strictObject({
   installationRole: z.enum(INSTALLATION_ROLES).nullable(),
   createdAt: momentText,
   deactivatedAt: momentText.nullable(),
-  signingSuspendedAt: momentText.nullable(),
   /** Whether the invitation has been taken up. */
   ready: z.boolean(),
 })

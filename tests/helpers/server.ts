@@ -80,12 +80,9 @@ export type CastName = keyof typeof CAST
 export async function makeStudyWithRoles() {
   const administrator = await makeClient({ name: 'Ada Administrator', administrator: true })
   const studyId = await makeStudy(administrator.client)
-  const members = await Promise.all(Object.entries(CAST).map(async ([name, role]) => {
-    const account = await makeClient({ name: `Test ${name}` })
-    await admit(administrator.client, { studyId, personId: account.id, role })
-    return [name, account] as const
-  }))
-  const as = Object.fromEntries(members) as Record<CastName, SignedInAccount>
+  const members = await Promise.all(Object.entries(CAST).map(async ([name, role]) => ({ name, role, account: await makeClient({ name: `Test ${name}` }) })))
+  for (const { role, account } of members) await admit(administrator.client, { studyId, personId: account.id, role }) // one by one: lists keep this order
+  const as = Object.fromEntries(members.map(({ name, account }) => [name, account])) as Record<CastName, SignedInAccount>
   await clear(administrator.client, { studyId, personId: as.cleared.id, proposer: as.biostatistician.client })
   return { studyId, as: { ...as, administrator, stranger: await makeClient({ name: 'Test stranger' }) } }
 }

@@ -16,8 +16,6 @@ export const person = pgTable('person', {
   installationRole: installationRole('installation_role'),
   createdAt: createdAt(),
   deactivatedAt: moment('deactivated_at'),
-  /** Set when signing is suspended after repeated failures to identify; sign-in stays possible. */
-  signingSuspendedAt: moment('signing_suspended_at'),
 }, t => [check('person_email_lower_case', sql`${t.email} = lower(${t.email})`)])
 
 /**
