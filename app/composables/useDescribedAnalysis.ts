@@ -1,5 +1,5 @@
 import type { PlannedAnalysis, Trigger } from '#shared/plan/analysisSchema'
-import { describePrerequisite, describeTrigger } from '#shared/plan/describe'
+import { describePrerequisite, describeStep, describeTrigger } from '#shared/plan/describe'
 import { wordPhrase, type Phrase } from '#shared/plan/phrase'
 import type { Prerequisite, Requirement } from '#shared/plan/prerequisiteSchema'
 
@@ -25,7 +25,7 @@ export function useDescribedAnalysis(analysis: Ref<PlannedAnalysis | null>) {
     const fallbacks = analysis.value?.fallbacks ?? []
     return {
       prerequisites: byId(analysis.value?.prerequisites ?? []),
-      labels: Object.fromEntries(fallbacks.map(({ id, method }) => [id, t(`plan.methods.${method}`)])),
+      labels: Object.fromEntries(fallbacks.map(step => [step.id, analysis.value ? word(describeStep(analysis.value, step)) : step.id])),
       triggers: Object.fromEntries(fallbacks.map(({ id, trigger }) => [id, worded(trigger)])),
       requirements: Object.fromEntries(fallbacks.map(({ id, prerequisites }) => [id, byId(prerequisites)])),
     }

@@ -69,18 +69,21 @@ export function chartOptions(figure: Figure, inks: Inks): ChartOptions<'scatter'
   }
 }
 
-const ALIGN = { start: 'left', middle: 'center', end: 'right' } as const
+/** How much of a label stands left of its point. */
+const SHIFT = { start: 0, middle: 0.5, end: 1 } as const
 
-/** Writes the direct labels beside their marks. */
+/** Writes the direct labels beside their marks, inside the figure's area. */
 export const labelPlugin = (figure: Figure, inks: Inks): Plugin<'scatter'> => ({
   id: 'directLabels',
-  afterDatasetsDraw({ ctx, scales }) {
+  afterDatasetsDraw({ ctx, scales, chartArea }) {
     ctx.save()
     ctx.font = '12px "Source Sans 3"'
     for (const { role, text, x, y, anchor } of figure.labels) {
+      const width = ctx.measureText(text).width
+      const wanted = scales.x!.getPixelForValue(x) - SHIFT[anchor] * width
+      const from = Math.max(chartArea.left, Math.min(wanted, chartArea.right - width))
       ctx.fillStyle = inks[role]
-      ctx.textAlign = ALIGN[anchor]
-      ctx.fillText(text, scales.x!.getPixelForValue(x), scales.y!.getPixelForValue(y))
+      ctx.fillText(text, from, scales.y!.getPixelForValue(y))
     }
     ctx.restore()
   },

@@ -8,6 +8,9 @@ export const heading = (text: string): Content => ({ text, style: 'heading', hea
 export const subheading = (text: string): Content => ({ text, style: 'subheading', headlineLevel: 2 })
 export const paragraph = (text: string): Content => ({ text, margin: [0, 3, 0, 4] })
 
+/** Room above and below a block, in points. */
+export const spaced = (content: Content, above: number, below = 0): Content => ({ stack: [content], margin: [0, above, 0, below] })
+
 /** A hash, breakable, in the face for code. */
 export const hashText = (hash: string): Content => ({ text: grouped(hash), style: 'code', margin: [0, 1.6, 0, 0] })
 

@@ -1,13 +1,15 @@
 import type { MemoVerdict } from '../../shared/memo/content'
 import type { PlannedAnalysis } from '../../shared/plan/analysisSchema'
+import { describeStep } from '../../shared/plan/describe'
+import { wordPhrase } from '../../shared/plan/phrase'
 import type { Reason } from '../../shared/plan/terms'
 import type { Say } from './words'
 
 /** Place in the registered order, from 1, and method of a step; null where there is no such step. */
-function placeOf({ fallbacks }: PlannedAnalysis, step: string | null, say: Say): { place: number, method: string } | null {
-  const index = fallbacks.findIndex(({ id }) => id === step)
-  const found = fallbacks[index]
-  return found ? { place: index + 1, method: say(`plan.methods.${found.method}`) } : null
+function placeOf(analysis: PlannedAnalysis, step: string | null, say: Say): { place: number, method: string } | null {
+  const index = analysis.fallbacks.findIndex(({ id }) => id === step)
+  const found = analysis.fallbacks[index]
+  return found ? { place: index + 1, method: wordPhrase(describeStep(analysis, found), say) } : null
 }
 
 /** A step within a sentence, e.g. `step 2, planned method on logarithms`. */

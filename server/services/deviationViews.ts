@@ -1,5 +1,5 @@
 import { asc, eq, inArray } from 'drizzle-orm'
-import type { Fallback, PlannedAnalysis } from '../../shared/plan/analysisSchema'
+import type { PlannedAnalysis } from '../../shared/plan/analysisSchema'
 import type { StudyId } from '../../shared/schemas/ids'
 import type { Queryable } from '../database/client'
 import { deviation, memo } from '../database/schema/deviation'
@@ -9,6 +9,7 @@ import { say } from '../../shared/wording/say'
 import { deviationFacts, type DeviationAddress, type DeviationFacts } from './deviationFacts'
 import { acknowledgementState, classOf, settlementsAllowed, type ToldVerdict } from './deviationRules'
 import { extractTitle } from './extractTitles'
+import { stepLabel } from './stepLabels'
 import { signatureById } from './signatures'
 
 type SettlementRow = DeviationFacts['settlements'][number]
@@ -18,11 +19,6 @@ export function registeredAnalysis({ check: { plan }, row }: DeviationFacts): Pl
   const found = plan.document.analyses.find(({ id }) => id === row.analysis)
   if (!found) throw new DomainError('internal')
   return found
-}
-
-const stepLabel = (fallbacks: readonly Fallback[], { step }: ToldVerdict): string | null => {
-  const found = fallbacks.find(({ id }) => id === step)
-  return found ? say('en', `plan.methods.${found.method}`) : null
 }
 
 /** Overruled means: by two, and nothing newer has reopened it. */

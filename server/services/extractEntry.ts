@@ -84,8 +84,10 @@ export async function enterExtract(tx: Transaction, received: Received, outcome:
   await appendRecord(tx, {
     chain: { studyId }, actor: actorOf(viewer), action: 'extract.received', subject: id,
     detail: {
-      number, fileName, cutOff, purpose, planVersion: plan.version, size: blob.size, state: row.state, standing: row.standing, look: row.look,
-      ...commitment === null ? { bytesHash: blob.hash } : { bytesHash: masked(blob.hash), commitment },
+      number, fileName, cutOff, purpose, planVersion: plan.version, state: row.state, standing: row.standing, look: row.look,
+      ...commitment === null
+        ? { bytesHash: blob.hash, size: blob.size }
+        : { bytesHash: masked(blob.hash), size: masked(blob.size), commitment },
       ...treatment === null ? {} : { column: treatment },
     },
   })

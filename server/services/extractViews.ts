@@ -34,6 +34,7 @@ const extracts = (db: Queryable) => db.select(selection).from(extract)
 type Selected = Awaited<ReturnType<typeof extracts>>[number]
 
 function summaryOf({ row, by, planVersion, openQueries }: Selected, document: Plan, { standing: { cleared } }: Viewer) {
+  const withheld = document.blinding === 'blinded' && isSealed(row) && !cleared
   return {
     id: row.id,
     number: row.number,
@@ -44,10 +45,10 @@ function summaryOf({ row, by, planVersion, openQueries }: Selected, document: Pl
     standing: row.standing,
     look: document.looks.find(({ id }) => id === row.look)?.name ?? null,
     planVersion,
-    size: row.size,
+    size: withheld ? null : row.size,
     rows: row.rows,
     subjects: row.subjects,
-    bytesHash: document.blinding === 'blinded' && isSealed(row) && !cleared ? null : row.bytesHash,
+    bytesHash: withheld ? null : row.bytesHash,
     contentHash: row.contentHash,
     uploadedBy: by,
     receivedAt: row.receivedAt,

@@ -65,7 +65,7 @@ function cellOf(analysis: string, checked: SeenCheck | null) {
   const seen = checked?.seen.analyses.find(each => each.analysis === analysis)
   const registered = checked?.plan.document.analyses.find(({ id }) => id === analysis)
   if (!seen || !registered) return { verdict: null, stepLabel: null }
-  return { verdict: seen.verdict, stepLabel: stepLabel(registered.fallbacks, seen.verdict) }
+  return { verdict: seen.verdict, stepLabel: stepLabel(registered, seen.verdict) }
 }
 
 function rowOf({ analysis, plan }: Registered, columns: readonly (SeenCheck | null)[], deviations: readonly DeviationRow[]) {

@@ -1,8 +1,10 @@
-import type { Fallback } from '../../shared/plan/analysisSchema'
+import type { PlannedAnalysis } from '../../shared/plan/analysisSchema'
+import { describeStep } from '../../shared/plan/describe'
+import { wordPhrase } from '../../shared/plan/phrase'
 import { say } from '../../shared/wording/say'
 
 /** The method of the step that a verdict names, in words; null when it names none. */
-export function stepLabel(fallbacks: readonly Fallback[], { step }: { readonly step: string | null }): string | null {
-  const found = fallbacks.find(({ id }) => id === step)
-  return found ? say('en', `plan.methods.${found.method}`) : null
+export function stepLabel(analysis: Pick<PlannedAnalysis, 'method' | 'fallbacks'>, { step }: { readonly step: string | null }): string | null {
+  const found = analysis.fallbacks.find(({ id }) => id === step)
+  return found ? wordPhrase(describeStep(analysis, found), (key, params) => say('en', key, params)) : null
 }

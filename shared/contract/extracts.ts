@@ -46,7 +46,8 @@ export const extractSummary = z.strictObject({
   standing: z.enum(['look', 're-cut', 'unscheduled', 'decision-point']).nullable(),
   look: z.string().nullable(),
   planVersion: z.number().int(),
-  size: z.number().int(),
+  /** In bytes; null like the hash where it would tell how long the names of arms are in sealed bytes. */
+  size: z.number().int().nullable(),
   rows: z.number().int().nullable(),
   subjects: z.number().int().nullable(),
   /** Hashes over bytes that contain allocation are shown to cleared members only. */

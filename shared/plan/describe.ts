@@ -53,6 +53,10 @@ export function describeTransformation({ base, shift, source }: Transformation):
   return shift === 0 ? phrase('plan.describe.log', { base, source }) : phrase('plan.describe.logShifted', { base, shift, source })
 }
 
+/** A step by its method; after the logarithm it is the planned method by its own name. */
+export const describeStep = ({ method: planned }: Pick<PlannedAnalysis, 'method'>, { method }: Pick<Fallback, 'method'>): Phrase =>
+  method === 'planned-after-log' ? phrase('plan.describe.afterLog', { method: phrase(`plan.methods.${planned}`) }) : phrase(`plan.methods.${method}`)
+
 /** A step in order: its method, its transformation if any, its trigger, its own prerequisites. */
 export function describeFallback(step: Fallback): Phrase[] {
   return [

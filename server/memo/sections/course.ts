@@ -1,6 +1,6 @@
 import type { Content } from 'pdfmake/interfaces'
 import type { MemoContent } from '../../../shared/memo/content'
-import { facts, heading, paragraph, ruledTable } from '../blocks'
+import { facts, heading, paragraph, ruledTable, spaced } from '../blocks'
 import { marked } from '../marks'
 import { verdictWords } from '../terms'
 import { dateWords, momentWords, type Say } from '../words'
@@ -26,7 +26,7 @@ export function courseSection(memo: MemoContent, say: Say): Content[] {
         { stack: [marked(verdict.word, verdictWords(memo.analysis.registered, verdict, say)), ...(binding ? [{ text: say('memo.force.binding'), style: 'small' }] : [])] },
         momentWords(releasedAt, say),
       ])),
-    { stack: unscheduled(memo, say), margin: [0, 6, 0, 0] },
+    spaced({ stack: unscheduled(memo, say) }, 6),
   ]
 }
 

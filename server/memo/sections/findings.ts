@@ -22,10 +22,10 @@ const lineOf = (figure: Figure, sample: string, n: string, say: Say): Line => ({
 function linesOf(prerequisite: SeenPrerequisite, armLabel: (arm: string | null) => string, say: Say): Line[] {
   const inSamples = prerequisite.samples.flatMap(({ arm, n, figures }) =>
     figures.map((figure, index) => lineOf(figure, index === 0 ? armLabel(arm) : '', index === 0 ? count(n) : '', say)))
-  return [...inSamples, ...prerequisite.figures.map(figure => lineOf(figure, say('memo.figures.inAll'), '', say))]
+  return [...inSamples, ...prerequisite.figures.map((figure, index) => lineOf(figure, index === 0 ? say('memo.figures.inAll') : '', '', say))]
 }
 
-const WIDTHS = [62, 26, '*', 56]
+const WIDTHS = [58, 22, '*', 52]
 
 const innerTable = (lines: readonly Line[]): TableCell => ({
   table: {
@@ -59,7 +59,7 @@ export function prerequisiteTable(prerequisites: readonly SeenPrerequisite[], me
     ]] },
     layout: { ...plain, paddingTop: () => 0, paddingBottom: () => 0 },
   }
-  return ruledTable([108, '*', 82], [say('memo.column.prerequisite'), head, say('memo.column.verdict')], prerequisites.map((prerequisite) => {
+  return ruledTable([102, '*', 82], [say('memo.column.prerequisite'), head, say('memo.column.verdict')], prerequisites.map((prerequisite) => {
     const lines = linesOf(prerequisite, armLabel, say)
     return [nameCell(prerequisite, say), lines.length > 0 ? innerTable(lines) : withheld(prerequisite, say), verdictCell(prerequisite, say)]
   }))

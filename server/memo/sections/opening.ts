@@ -1,6 +1,6 @@
 import type { Content } from 'pdfmake/interfaces'
 import type { MemoContent } from '../../../shared/memo/content'
-import { facts } from '../blocks'
+import { facts, spaced } from '../blocks'
 import { marked } from '../marks'
 import { stepName, verdictWords } from '../terms'
 import { dateWords, momentWords, type Say } from '../words'
@@ -35,7 +35,7 @@ export function opening(memo: MemoContent, signedAt: string, say: Say): Content[
     { text: say('memo.title', { number: memo.number }), style: 'title' },
     { text: say('memo.subtitle', { study: study.protocolNumber, title: study.title }), style: 'soft', margin: [0, 2, 0, 12] },
     { text: analysis.registered.label, style: 'analysis' },
-    { ...asStack(marked(verdict.word, verdictWords(analysis.registered, verdict, say), { bold: true, size: 15 })), margin: [0, 3, 0, 8] },
+    spaced(marked(verdict.word, verdictWords(analysis.registered, verdict, say), { bold: true, size: 15 }), 3, 8),
     { text: lead(memo, say), style: 'lead', margin: [0, 0, 0, 10] },
     facts([
       [say('memo.fact.class'), { text: say(`deviation.classes.${memo.deviationClass}`), bold: true }],
@@ -49,5 +49,3 @@ export function opening(memo: MemoContent, signedAt: string, say: Say): Content[
     ]),
   ]
 }
-
-const asStack = (content: Content) => ({ stack: [content] })

@@ -1,9 +1,7 @@
 import type { Content } from 'pdfmake/interfaces'
 import type { MemoContent } from '../../../shared/memo/content'
-import { facts, heading, paragraph, signatureRows } from '../blocks'
+import { facts, heading, paragraph, signatureRows, spaced } from '../blocks'
 import { momentWords, type Say } from '../words'
-
-const spaced = (content: Content): Content => ({ stack: [content], margin: [0, 5, 0, 0] })
 
 /** That the investigator was told, and what came back: informed, declined, awaited or outstanding. */
 export function informedSection({ acknowledgement }: MemoContent, say: Say): Content[] {
@@ -17,7 +15,7 @@ export function informedSection({ acknowledgement }: MemoContent, say: Say): Con
       ...(comment === null ? [] : [[say('memo.fact.comment'), comment] as const]),
     ]),
     paragraph(say('memo.acknowledgement.meaning')),
-    ...(signature === null ? [] : [spaced(signatureRows([signature], say))]),
+    ...(signature === null ? [] : [spaced(signatureRows([signature], say), 5)]),
   ]
 }
 
@@ -31,6 +29,6 @@ export function settlementSection({ settlement }: MemoContent, say: Say): Conten
       [say('memo.fact.note'), note],
     ]),
     paragraph(say(`memo.settlement.${kind}`)),
-    spaced(signatureRows(second === null ? [signature] : [signature, second], say)),
+    spaced(signatureRows(second === null ? [signature] : [signature, second], say), 5),
   ]
 }

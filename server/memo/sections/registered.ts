@@ -1,6 +1,6 @@
 import type { Content } from 'pdfmake/interfaces'
 import type { MemoContent, MemoStep } from '../../../shared/memo/content'
-import { facts, hashText, heading, paragraph, signatureRows, subheading } from '../blocks'
+import { facts, hashText, heading, paragraph, signatureRows, spaced, subheading } from '../blocks'
 import { INK } from '../styles'
 import { dateWords, momentWords, type Say } from '../words'
 
@@ -11,13 +11,11 @@ function declarationWords({ declaration }: MemoContent['plan'], say: Say): Conte
   return `${subject} ${say(`memo.declaration.seen.${dataSeen}`)}`
 }
 
-const MARGIN: [number, number, number, number] = [0, 0, 0, 1.5]
+const list = (lines: readonly string[]): Content => ({ ul: lines.map(text => spaced(text, 0, 1.5)), markerColor: INK.soft })
 
-const list = (lines: readonly string[]): Content => ({ ul: lines.map(text => ({ text, margin: MARGIN })), markerColor: INK.soft })
-
-const stepBlock = ({ head, lines }: MemoStep): Content => ({ stack: [{ text: head, bold: true, margin: [0, 3, 0, 1] }, { ...marginLeft, stack: [list(lines)] }] })
-
-const marginLeft = { margin: [10, 0, 0, 0] as [number, number, number, number] }
+const stepBlock = ({ head, lines }: MemoStep): Content => ({
+  stack: [{ text: head, bold: true, margin: [0, 3, 0, 1] }, { stack: [list(lines)], margin: [10, 0, 0, 0] }],
+})
 
 /** The planned analysis as signed, and the proof of when it was signed. */
 export function registeredSection(memo: MemoContent, say: Say): Content[] {
@@ -29,7 +27,7 @@ export function registeredSection(memo: MemoContent, say: Say): Content[] {
     list(analysis.words.prerequisites),
     subheading(say('memo.heading.steps')),
     ...analysis.words.order.map(stepBlock),
-    { text: analysis.words.notAssessable, margin: [0, 3, 0, 0] },
+    spaced(analysis.words.notAssessable, 3),
     subheading(say('memo.heading.plan')),
     facts([
       [say('memo.fact.planSigned'), momentWords(plan.signedAt, say)],
@@ -38,8 +36,6 @@ export function registeredSection(memo: MemoContent, say: Say): Content[] {
       ...(plan.amendmentReason === null ? [] : [[say('memo.fact.amendment'), plan.amendmentReason] as const]),
     ]),
     ...plan.marks.map(mark => paragraph(say(`memo.mark.${mark}`))),
-    { ...asStack(signatureRows(plan.signatures, say)), margin: [0, 6, 0, 0] },
+    ...(plan.signatures.length === 0 ? [] : [spaced(signatureRows(plan.signatures, say), 6)]),
   ]
 }
-
-const asStack = (content: Content) => ({ stack: [content] })
