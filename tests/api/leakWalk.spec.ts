@@ -4,45 +4,53 @@ import { uploadAllocationOperation } from '#shared/contract/allocations'
 import { listDeviationsOperation } from '#shared/contract/deviations'
 import { uploadExtractOperation } from '#shared/contract/extracts'
 import { previewReleaseOperation, readArmsOperation, signReleaseOperation, type VerdictView } from '#shared/contract/ledger'
-import { createPlanOperation, savePlanOperation, signPlanAsAuthorOperation } from '#shared/contract/plans'
-import { readStudyOperation } from '#shared/contract/studies'
 import type { ExtractId } from '#shared/schemas/domainIds'
 import type { StudyId } from '#shared/schemas/ids'
 import { check } from '../../server/database/schema/check'
 import { allocation } from '../../server/database/schema/extract'
 import { comparable, readEverything, type Places, type Reading } from '../helpers/readEverything'
-import { makeStudyWithRoles, serverDatabase } from '../helpers/server'
+import { registerPlan } from '../helpers/registerPlan'
+import { admit, clear, makeClient, makeStudy, serverDatabase, type SignedInAccount } from '../helpers/server'
 import { judgeNow } from '../helpers/serviceStudy'
-import { openLabelFile, subjectId, trialAllocation, trialFile, trialPlan } from '../helpers/trial'
+import { openLabelFile, subjectId, trialAllocation, trialFile } from '../helpers/trial'
 
-type Cast = Awaited<ReturnType<typeof makeStudyWithRoles>>
+const MEMBERS = {
+  biostatistician: 'biostatistician', reviewer: 'biostatistician', cleared: 'biostatistician', dataManager: 'data-manager', investigator: 'investigator', monitor: 'monitor',
+} as const
+interface Cast { readonly studyId: string, readonly as: Record<keyof typeof MEMBERS | 'administrator' | 'stranger', SignedInAccount> }
 const BLINDED = ['biostatistician', 'reviewer', 'dataManager', 'investigator', 'monitor', 'administrator', 'stranger'] as const
+
+/** A file that carries arms under names of unequal length, and not the same number of each in both studies. */
+const carryingArms = (kind: 'spread' | 'even') => openLabelFile(kind).replaceAll(',ACT', ',Active 20 mg').replace(',Active 20 mg', kind === 'even' ? ',PBO' : ',Active 20 mg')
 
 const csv = (bytes: string) => ({ bytes, type: 'text/csv' })
 
-async function registerPlan({ studyId, as: { biostatistician } }: Cast): Promise<{ planId: string, protocolNumber: string }> {
-  const params = { studyId }
-  const { protocolNumber } = await biostatistician.client.call(readStudyOperation, { params })
-  const { id, revision } = await biostatistician.client.call(createPlanOperation, { params, body: { amendmentReason: null } })
-  const at = { studyId, planId: id }
-  const saved = await biostatistician.client.call(savePlanOperation, { params: at, revision, body: { document: trialPlan(protocolNumber) } })
-  await biostatistician.client.call(signPlanAsAuthorOperation, {
-    params: at, revision: saved.revision,
-    body: { identifier: biostatistician.email, password: biostatistician.password, declaration: { firstSubjectIn: null, dataSeen: 'none' } },
-  })
-  return { planId: id, protocolNumber }
+/** People come one after the other, so that two studies have the same history. */
+async function makeCast(): Promise<Cast> {
+  const administrator = await makeClient({ name: 'Ada Administrator', administrator: true })
+  const studyId = await makeStudy(administrator.client)
+  const members: Partial<Record<keyof typeof MEMBERS, SignedInAccount>> = {}
+  for (const [name, role] of Object.entries(MEMBERS) as [keyof typeof MEMBERS, typeof MEMBERS[keyof typeof MEMBERS]][]) {
+    const account = members[name] = await makeClient({ name: `Test ${name}` })
+    await admit(administrator.client, { studyId, personId: account.id, role })
+  }
+  const as = { ...members as Required<typeof members>, administrator, stranger: await makeClient({ name: 'Test stranger' }) }
+  await clear(administrator.client, { studyId, personId: as.cleared.id, proposer: as.biostatistician.client })
+  return { studyId, as }
 }
 
 /** One study from plan to judged look, by the interface alone; only the allocation differs between two of them. */
 async function runStudy(kind: 'spread' | 'even') {
-  const cast = await makeStudyWithRoles()
+  const cast = await makeCast()
   const { studyId, as } = cast
   const { planId, protocolNumber } = await registerPlan(cast)
   const query = { fileName: 'adeff.csv', cutOff: '2026-04-02', purpose: 'interim' } as const
   const { id: extractId } = await as.dataManager.client.call(uploadExtractOperation, { params: { studyId }, query, file: csv(trialFile()) })
-  await as.dataManager.client.refused(uploadExtractOperation, { params: { studyId }, query: { ...query, fileName: 'with-arms.csv' }, file: csv(openLabelFile(kind)) })
+  const at = { studyId: studyId as StudyId, extractId: extractId as ExtractId }
+  await judgeNow(serverDatabase().db, at) // whether or not a worker is quicker, the history is the same
+  await as.dataManager.client.refused(uploadExtractOperation, { params: { studyId }, query: { ...query, fileName: 'with-arms.csv' }, file: csv(carryingArms(kind)) })
   await as.cleared.client.call(uploadAllocationOperation, { params: { studyId }, query: { kind: 'true' }, file: csv(trialAllocation(kind)) })
-  await judgeNow(serverDatabase().db, { studyId: studyId as StudyId, extractId: extractId as ExtractId })
+  await judgeNow(serverDatabase().db, at)
   return { cast, studyId, planId, protocolNumber, extractId }
 }
 type Run = Awaited<ReturnType<typeof runStudy>>
@@ -62,6 +70,10 @@ async function walk(run: Run): Promise<Record<typeof BLINDED[number], Reading[]>
   return Object.fromEntries(readings) as Record<typeof BLINDED[number], Reading[]>
 }
 
+/** Who is who does not depend on the order in which ids sort. */
+const knownOf = ({ protocolNumber, cast: { as } }: Run): Record<string, string> =>
+  ({ protocol: protocolNumber, ...Object.fromEntries(Object.entries(as).map(([part, { id }]) => [part, id])) })
+
 /** Answers of the study at hand; those of the installation also tell of what other tests are doing. */
 const ofStudy = (readings: readonly Reading[]) => readings.filter(({ scope }) => scope === 'study')
 
@@ -73,7 +85,8 @@ function armFigures({ seen }: VerdictView): string[] {
       .flatMap(({ value, pValue, lower, upper }) => [value, pValue, lower, upper]),
     ...(seen.plot?.quantiles ?? []).map(({ value }) => value),
   ]
-  return figures.filter((figure): figure is number => figure !== null && !Number.isInteger(figure)).map(String)
+  // A short figure such as 6.44 stands in moments and plans by chance; one of six digits does not.
+  return figures.filter(figure => figure !== null).map(String).filter(text => text.length >= 7)
 }
 
 /** Hashes over bytes that contain allocation or what was judged with it. */
@@ -96,7 +109,7 @@ describe('what members without clearance receive', () => {
   it('is the same, byte by byte, whatever the allocation, before anything is released', async () => {
     const [one, other] = [await walk(spread), await walk(even)]
     for (const part of BLINDED) {
-      const compare = (run: Run, readings: Reading[]) => comparable(ofStudy(readings), { protocol: run.protocolNumber })
+      const compare = (run: Run, readings: Reading[]) => comparable(ofStudy(readings), knownOf(run))
       expect(compare(spread, one[part]), part).toBe(compare(even, other[part]))
     }
     expect(ofStudy(one.monitor).some(({ text }) => text.includes('held-behind-the-blind'))).toBe(true)
@@ -110,7 +123,7 @@ describe('what members without clearance receive', () => {
     await cleared.client.call(signReleaseOperation, { params, body: { identifier: cleared.email, password: cleared.password, hash } })
     const after = await walk(spread)
     const figures = armFigures(await cleared.client.call(readArmsOperation, { params: { ...params, analysis: 'PAIN-T' } }))
-    expect(figures.length).toBeGreaterThan(20)
+    expect(figures.length).toBeGreaterThan(10)
     const forbidden = [...figures, ...await sealedHashes(spread)]
 
     for (const { path, text } of [before, after].flatMap(walked => Object.values(walked).flat())) {

@@ -38,11 +38,16 @@ export class Client {
   /** Any request; keeps the cookies that come back. */
   async request(path: string, init: RequestInit = {}): Promise<Response> {
     const headers = new Headers(init.headers)
-    if (this.#cookies.size > 0) headers.set('cookie', [...this.#cookies].map(([name, value]) => `${name}=${value}`).join('; '))
+    if (this.#cookies.size > 0) headers.set('cookie', this.cookie())
     if (init.method && init.method !== 'GET' && !headers.has('origin')) headers.set('origin', this.origin)
     const response = await fetch(this.origin + path, { redirect: 'manual', ...init, headers })
     for (const cookie of response.headers.getSetCookie()) this.#keep(cookie)
     return response
+  }
+
+  /** The cookies at hand as a header, for requests that are written by hand. */
+  cookie(): string {
+    return [...this.#cookies].map(([name, value]) => `${name}=${value}`).join('; ')
   }
 
   #keep(cookie: string): void {

@@ -148,7 +148,7 @@ describe('an extract that carries treatment', () => {
     expect(refusal).toMatchObject({ code: 'treatment-column', errors: [{ row: 1, column: 'TRT01P' }] })
     const [row] = await rows()
     const seen = await view(row!.id)
-    expect(seen).toMatchObject({ state: 'sealed', columns: [], preview: null, mapping: null, suggestedMapping: null, bytesHash: null, contentHash: null, rows: null })
+    expect(seen).toMatchObject({ state: 'sealed', columns: [], preview: null, mapping: null, suggestedMapping: null, size: null, bytesHash: null, contentHash: null, rows: null })
     expect(seen.findingList).toEqual([{ severity: 'refuse', code: 'treatment-column', row: 1, column: 'TRT01P', params: {} }])
     expect(JSON.stringify([refusal.errors, seen])).not.toMatch(/ACT|PBO|T-001/)
     expect(await refusalOf(bytesOf(row!.id, 'dataManager'))).toMatchObject({ code: 'not-permitted' })
