@@ -13,6 +13,9 @@ import { registeredSection } from './sections/registered'
 import { MARGINS, STYLES } from './styles'
 import type { Say } from './words'
 
+/** Share of the text height below which no heading begins. */
+const LOWEST_HEADING = 0.9
+
 export interface SignedMemo {
   readonly content: MemoContent
   /** The canonical bytes that were signed; attached as they are. */
@@ -64,7 +67,7 @@ export function memoDocument({ content, bytes, signature }: SignedMemo, say: Say
     header: headerOf(content, say),
     footer: footerOf(content, signature, say),
     content: pages(content, signature, say),
-    // A heading alone at the foot of a page belongs on the next one.
-    pageBreakBefore: (node, { getFollowingNodesOnPage }) => node.headlineLevel === 1 && getFollowingNodesOnPage().length < 2,
+    // A heading near the foot of a page belongs to what follows on the next one.
+    pageBreakBefore: ({ headlineLevel, startPosition }) => headlineLevel !== undefined && startPosition.verticalRatio > LOWEST_HEADING,
   }
 }
