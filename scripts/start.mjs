@@ -40,7 +40,7 @@ async function chosenDatabase(signal) {
   }
   await requirePackages(['start'], join(logDir, 'packages.log'))
   say('Starting the private PostgreSQL.')
-  const cluster = await startCluster({ stateDir: join(dataDir, 'postgres'), logDir, signal })
+  const cluster = await startCluster({ stateDir: dataDir, logDir, signal })
   return { databaseUrl: cluster.databaseUrl, migrationUrl: cluster.migrationUrl, own: false, ended: cluster.ended, stop: cluster.stop }
 }
 

@@ -115,7 +115,7 @@ async function served(signal) {
   const home = join(dataDir, 'test')
   makeDataDir(home)
   makeSecrets(home)
-  const cluster = await startCluster({ stateDir: join(home, 'postgres'), logDir, durable: false, signal })
+  const cluster = await startCluster({ stateDir: home, logDir, durable: false, signal })
   try {
     await cluster.execute('drop database if exists stipule_template with (force); drop database if exists stipule with (force); create database stipule owner stipule_owner;')
     const settings = { root, dataDir: home, logDir, port: await freePort(), demo: false, signal, databaseUrl: cluster.databaseUrl, migrationUrl: cluster.migrationUrl }

@@ -2,10 +2,10 @@ import type { DeviationId, ExtractId, MemoId } from '../../shared/schemas/domain
 import type { InvitationId, PersonId, StudyId } from '../../shared/schemas/ids'
 
 /** What a mail is about; the worker reads the rest when it writes it, so that no text or secret stands in a job. */
-export type MailJob =
-  | { readonly kind: 'invitation', readonly to: PersonId, readonly invitationId: InvitationId }
-  | { readonly kind: 'deviation-opened', readonly to: PersonId, readonly studyId: StudyId, readonly deviationId: DeviationId }
-  | { readonly kind: 'memo-issued', readonly to: PersonId, readonly studyId: StudyId, readonly memoId: MemoId }
+export type MailJob
+  = | { readonly kind: 'invitation', readonly to: PersonId, readonly invitationId: InvitationId }
+    | { readonly kind: 'deviation-opened', readonly to: PersonId, readonly studyId: StudyId, readonly deviationId: DeviationId }
+    | { readonly kind: 'memo-issued', readonly to: PersonId, readonly studyId: StudyId, readonly memoId: MemoId }
 
 /** Every queue with the data of its jobs. Handlers are idempotent: a job may run twice. */
 export interface Jobs {
