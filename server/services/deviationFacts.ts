@@ -1,4 +1,4 @@
-import { and, asc, eq, isNotNull } from 'drizzle-orm'
+import { and, asc, eq, inArray, isNotNull } from 'drizzle-orm'
 import type { SeenAnalysis } from '../../shared/decision/report'
 import type { CheckId, DeviationId } from '../../shared/schemas/domainIds'
 import type { PersonId, StudyId } from '../../shared/schemas/ids'
@@ -70,13 +70,13 @@ export async function deviationFacts(db: Queryable, { studyId, deviationId }: De
   }
 }
 
-/** Who uploaded the extracts of a deviation and who signed their releases: neither may settle it. */
+/** Who uploaded the extracts of a deviation and who signed releases of them: neither may settle it. */
 export async function handsIn(db: Queryable, { row, entries }: DeviationFacts): Promise<{ uploaders: PersonId[], releasers: PersonId[] }> {
-  const checks = new Set(entries.map(({ entry }) => entry.checkId))
-  const signed = await db.select({ checkId: release.checkId, by: release.releasedBy }).from(release)
-    .where(and(eq(release.studyId, row.studyId), isNotNull(release.releasedBy)))
+  const extracts = [...new Set(entries.map(({ extract: { id } }) => id))]
+  const signed = await db.select({ by: release.releasedBy }).from(release)
+    .where(and(eq(release.studyId, row.studyId), inArray(release.extractId, extracts), isNotNull(release.signatureId)))
   return {
     uploaders: entries.map(({ extract: { uploadedBy } }) => uploadedBy),
-    releasers: signed.flatMap(({ checkId, by }) => by !== null && checks.has(checkId) ? [by] : []),
+    releasers: signed.flatMap(({ by }) => by === null ? [] : [by]),
   }
 }

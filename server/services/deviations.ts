@@ -62,21 +62,22 @@ async function newestVerdict(tx: Transaction, { id }: DeviationRow, extractId: E
   return row ? row.verdict as ToldVerdict : null
 }
 
-const same = (a: ToldVerdict, b: ToldVerdict) => a.word === b.word && a.step === b.step
+const same = (a: ToldVerdict, b: ToldVerdict) => a.word === b.word && a.step === b.step && a.reason === b.reason && a.setAside === b.setAside
 
-/** Adds a verdict. One that says something new about an extract reopens what had been settled or put under observation. */
+/**
+ * Adds a verdict, and reopens what had been settled or put under observation. A further run over the same
+ * extract that says the same adds nothing.
+ */
 async function extend(tx: Transaction, telling: Telling, row: DeviationRow, { verdict }: SeenAnalysis): Promise<void> {
   const { studyId, extractId, checkId, actor } = telling
   const before = await newestVerdict(tx, row, extractId)
-  const added = await tx.insert(deviationEntry)
-    .values({ id: newId(), studyId, deviationId: row.id, extractId, checkId, verdict, releasedAt: sql`now()` })
-    .onConflictDoNothing().returning({ id: deviationEntry.id })
-  if (added.length === 0) return
-  const reopens = row.state !== 'open' && (before === null || !same(before, verdict))
-  if (reopens) await tx.update(deviation).set({ state: 'open' }).where(eq(deviation.id, row.id))
+  if (before !== null && same(before, verdict)) return
+  await tx.insert(deviationEntry).values({ id: newId(), studyId, deviationId: row.id, extractId, checkId, verdict, releasedAt: sql`now()` })
+  const reopened = row.state !== 'open'
+  if (reopened) await tx.update(deviation).set({ state: 'open' }).where(eq(deviation.id, row.id))
   await appendRecord(tx, {
     chain: { studyId }, actor, action: 'deviation.extended', subject: row.id,
-    detail: { number: row.number, extract: telling.check.extract.number, verdict: verdict.word, step: verdict.step, reopened: reopens },
+    detail: { number: row.number, extract: telling.check.extract.number, verdict: verdict.word, step: verdict.step, reopened },
   })
   await notify(tx, { studyId, kind: 'deviation', id: row.id })
 }

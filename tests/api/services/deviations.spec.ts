@@ -120,6 +120,16 @@ describe('a deviation', () => {
   })
 })
 
+describe('a further run over the same extract', () => {
+  it('adds nothing when it says the same', async () => {
+    const own = await unresolved()
+    await settleAs(own, 'biostatistician', 'report-without-claim')
+    await allocate(own, trialAllocation('even'), [own.extractId])
+    expect(await view(own)).toMatchObject({ state: 'settled', entries: [{ extract: { number: 1 } }] })
+    expect((await actionsIn(own)).filter(action => action === 'deviation.extended')).toHaveLength(1)
+  })
+})
+
 describe('acknowledgement', () => {
   it('is signed by an investigator, once, and changes no verdict', async () => {
     const own = await unresolved()
