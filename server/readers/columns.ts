@@ -1,7 +1,7 @@
 import type { ColumnMapping } from '../../shared/contract/extracts'
 import type { ExtractColumns } from '../../shared/decision/columns'
 import type { Plan } from '../../shared/plan/schema'
-import { cellText, hasControlCharacter, hasOddBlanks, looksLikeFormula } from './cellText'
+import { TextCells } from './cellText'
 import type { CsvRow } from './csv'
 import { FindingList, quoted } from './findings'
 import { IdSpelling } from './idSpelling'
@@ -17,19 +17,6 @@ const sourceIn = (header: readonly string[], name: string): Source => ({ name, i
 type TextRole = 'parameter' | 'visit' | 'unit' | 'site' | 'imputed' | 'arm'
 const TEXT_ROLES: readonly TextRole[] = ['parameter', 'visit', 'unit', 'site', 'imputed', 'arm']
 
-/** Keeps one string per distinct text, so that a million cells of ten words hold ten words. */
-class Texts {
-  readonly #pool = new Map<string, string>()
-
-  of(cell: string): string {
-    const known = this.#pool.get(cell)
-    if (known !== undefined) return known
-    const text = cellText(cell)
-    this.#pool.set(cell, text)
-    return text
-  }
-}
-
 /**
  * Builds typed columns row by row and notes what is wrong. Rows are never left out or repaired: a file is
  * accepted whole or refused.
@@ -43,7 +30,7 @@ export class ColumnsBuilder {
   readonly #baseline: Source | null
   readonly #texts: readonly (Source & { readonly role: TextRole, readonly cells: string[] })[]
   readonly #flags: readonly (Source & { readonly flag: string, readonly cells: string[] })[]
-  readonly #pool = new Texts()
+  readonly #cells = new TextCells()
   readonly #spelling = new IdSpelling()
   readonly #arms: ReadonlyMap<string, string>
   readonly #armOf = new Map<string, string>()
@@ -116,7 +103,7 @@ export class ColumnsBuilder {
       const cell = cells[source.index] ?? ''
       const text = this.#readText(row, source, cells)
       if (text === '') this.findings.add('refuse', 'subject-missing', { row, column: source.name })
-      else if (hasOddBlanks(cell)) this.findings.add('warn', 'id-blanks', { row, column: source.name }, { id: quoted(cell) })
+      else if (this.#cells.of(cell).oddBlanks) this.findings.add('warn', 'id-blanks', { row, column: source.name }, { id: quoted(cell) })
       return text
     })
     const subject = subjectKey(parts)
@@ -136,9 +123,10 @@ export class ColumnsBuilder {
 
   #readText(row: number, { name, index }: Source, cells: readonly string[]): string {
     const cell = cells[index] ?? ''
-    if (hasControlCharacter(cell)) this.findings.add('warn', 'control-character', { row, column: name })
-    if (looksLikeFormula(cell)) this.findings.add('warn', 'formula', { row, column: name }, { text: quoted(cell) })
-    return this.#pool.of(cell)
+    const { text, control, formula } = this.#cells.of(cell)
+    if (control) this.findings.add('warn', 'control-character', { row, column: name })
+    if (formula) this.findings.add('warn', 'formula', { row, column: name }, { text: quoted(cell) })
+    return text
   }
 
   #readArm(row: number, { name }: Source, text: string, subject: string): string {

@@ -25,10 +25,10 @@ const LOOKS: readonly (readonly [NotANumber, RegExp])[] = [
 /** Blanks that pad a cell; other white space is no padding. */
 const unpadded = (text: string): string => text.replace(/^ +| +$/g, '')
 
+/** A double that is neither beyond its range nor zero for digits that are not. */
 function readPlain(text: string): NumberReading {
   const value = Number(text)
-  const digits = text.split(/[eE]/)[0] ?? ''
-  const lost = !Number.isFinite(value) || (value === 0 && NONZERO.test(digits))
+  const lost = value === 0 ? NONZERO.test(text.split(/[eE]/)[0] ?? '') : !Number.isFinite(value)
   return lost ? { kind: 'not-a-number', looks: 'out-of-range' } : { kind: 'number', value }
 }
 
@@ -37,6 +37,7 @@ function readPlain(text: string): NumberReading {
  * cell is missing; what is beyond the range of a double is no number. Nothing is guessed or repaired.
  */
 export function readNumber(cell: string): NumberReading {
+  if (PLAIN.test(cell)) return readPlain(cell)
   const text = unpadded(cell)
   if (text === '') return { kind: 'missing' }
   if (PLAIN.test(text)) return readPlain(text)

@@ -1,3 +1,4 @@
+import { setImmediate } from 'node:timers/promises'
 import type { ExtractColumns } from '../../shared/decision/columns'
 
 /**
@@ -54,22 +55,27 @@ function littleEndian(column: Float64Array | Uint32Array): Uint8Array {
   return bytes
 }
 
-export function encodeColumns(columns: ExtractColumns): Uint8Array {
-  const described: Described[] = []
-  const bodies: Uint8Array[] = []
+type Encoded = Described & { readonly column: Float64Array | Uint32Array }
+
+function encodeOne(name: string, column: Named[string]): Encoded {
+  if (column instanceof Float64Array) return { name, kind: 'numbers', column }
+  if (column instanceof Uint32Array) return { name, kind: 'rows', column }
+  const { dictionary, codes } = encodeTexts(column)
+  return { name, kind: 'texts', dictionary, column: codes }
+}
+
+/** The stored form piece by piece; between two columns others get their turn. */
+export async function* encodeColumns(columns: ExtractColumns): AsyncGenerator<Uint8Array> {
+  const encoded: Encoded[] = []
   for (const [name, column] of Object.entries(named(columns))) {
-    if (column instanceof Float64Array || column instanceof Uint32Array) {
-      described.push({ name, kind: column instanceof Float64Array ? 'numbers' : 'rows' })
-      bodies.push(littleEndian(column))
-    }
-    else {
-      const { dictionary, codes } = encodeTexts(column)
-      described.push({ name, kind: 'texts', dictionary })
-      bodies.push(littleEndian(codes))
-    }
+    encoded.push(encodeOne(name, column))
+    await setImmediate()
   }
-  const description: Description = { rows: columns.rows, columns: described }
-  return Buffer.concat([header(description), ...bodies])
+  yield header({ rows: columns.rows, columns: encoded.map(({ column: _, ...described }) => described) })
+  for (const { column } of encoded) {
+    yield littleEndian(column)
+    await setImmediate()
+  }
 }
 
 function header(description: Description): Uint8Array {

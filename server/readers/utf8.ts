@@ -57,10 +57,19 @@ function decode(bytes: Uint8Array): Decoded {
   }
 }
 
+/** Small enough that the lines of one piece are parsed in a moment. */
+const PIECE = 64 * 1024
+
+async function* smallPieces(source: AsyncIterable<Uint8Array>): AsyncGenerator<Uint8Array> {
+  for await (const chunk of source) {
+    for (let start = 0; start < chunk.length; start += PIECE) yield chunk.subarray(start, start + PIECE)
+  }
+}
+
 /** Pieces that end with a newline, but for the last. */
 async function* wholeLines(source: AsyncIterable<Uint8Array>): AsyncGenerator<Uint8Array> {
   let pending: Uint8Array = new Uint8Array()
-  for await (const chunk of source) {
+  for await (const chunk of smallPieces(source)) {
     const [lines, rest] = splitAtLastNewline(pending.length === 0 ? chunk : Buffer.concat([pending, chunk]))
     if (lines.length > 0) yield lines
     pending = rest

@@ -62,6 +62,22 @@ describe('an extract with ADaM names', () => {
     expect(await upload(own, trialFile(), { purpose: 'database-lock', cutOff: '2026-12-24' })).toMatchObject({ standing: 'decision-point', look: null, state: 'judging' })
   })
 
+  it('gets a number and a place of its own when several come at once', async () => {
+    await newStudy()
+    const received = await Promise.all(Array.from({ length: 4 }, (_, index) => upload(own, trialFile({ seed: index + 1 }))))
+    expect(received.map(({ number }) => number).sort()).toEqual([1, 2, 3, 4])
+    expect(received.map(({ standing }) => standing).sort()).toEqual(['look', 're-cut', 're-cut', 're-cut'])
+  })
+
+  it('causes its check in the same transaction', async () => {
+    await newStudy()
+    const { id } = await upload(own, trialFile())
+    const jobs = await database.sql<{ data: unknown }[]>`select data from pgboss.job where name = 'check' and data->>'extractId' = ${id}`
+    expect(jobs).toEqual([{ data: { studyId: own.studyId, extractId: id } }])
+    await upload(own, trialFile({ week8: { 1: 'x' } }))
+    expect(await database.sql`select 1 from pgboss.job where name = 'check' and data->>'studyId' = ${own.studyId}`).toHaveLength(1)
+  })
+
   it('needs a signed plan', async () => {
     await newStudy(null)
     expect(await refusalOf(upload(own, trialFile()))).toMatchObject({ code: 'plan-not-signed' })

@@ -9,44 +9,51 @@ const small: ExtractColumns = {
   flags: { 'FASFL': ['Y', '', 'Y'], 'ANL.01': ['Y', 'Y', 'N'] },
 }
 
+async function encoded(columns: ExtractColumns): Promise<Uint8Array> {
+  const pieces: Uint8Array[] = []
+  for await (const piece of encodeColumns(columns)) pieces.push(piece)
+  return Buffer.concat(pieces)
+}
+
 describe('stored columns', () => {
-  it('come back as they were, the sign of zero and missing values included', () => {
-    const back = decodeColumns(encodeColumns(small))
+  it('come back as they were, the sign of zero and missing values included', async () => {
+    const back = decodeColumns(await encoded(small))
     expect(back).toEqual(small)
     expect(Object.is(back.value[2], -0)).toBe(true)
   })
 
-  it('are little-endian behind a description padded to 8 bytes', () => {
-    const bytes = encodeColumns(small)
+  it('are little-endian behind a description padded to 8 bytes', async () => {
+    const bytes = await encoded(small)
     expect(Buffer.from(bytes.subarray(0, 8)).toString()).toBe('STPCOL01')
     const body = 12 + new DataView(bytes.buffer, bytes.byteOffset).getUint32(8, true)
     expect(body % 8).toBe(0)
     expect([...bytes.subarray(body, body + 12)]).toEqual([2, 0, 0, 0, 4, 0, 0, 0, 5, 0, 0, 0])
   })
 
-  it('can be read at any offset of a larger buffer', () => {
-    const bytes = encodeColumns(small)
+  it('can be read at any offset of a larger buffer', async () => {
+    const bytes = await encoded(small)
     const shifted = new Uint8Array(bytes.length + 3)
     shifted.set(bytes, 3)
     expect(decodeColumns(shifted.subarray(3))).toEqual(small)
   })
 
-  it('round-trip whatever a file can hold', () => {
+  it('round-trip whatever a file can hold', async () => {
     const text = fc.string({ unit: 'grapheme' })
     const rows = fc.array(fc.record({ subject: text, visit: text, unit: text, flag: text, value: fc.double(), baseline: fc.double() }))
-    fc.assert(fc.property(rows, (list) => {
+    await fc.assert(fc.asyncProperty(rows, async (list) => {
       const columns: ExtractColumns = {
         rows: list.length, sourceRow: Uint32Array.from(list.keys()), subject: list.map(({ subject }) => subject), parameter: null,
         visit: list.map(({ visit }) => visit), unit: list.map(({ unit }) => unit), site: null, imputed: null, arm: null,
         value: Float64Array.from(list, ({ value }) => value), baseline: Float64Array.from(list, ({ baseline }) => baseline),
         flags: { FASFL: list.map(({ flag }) => flag) },
       }
-      expect(decodeColumns(encodeColumns(columns))).toEqual(columns)
+      expect(decodeColumns(await encoded(columns))).toEqual(columns)
     }), { numRuns: 200 })
   })
 
-  it('refuse other bytes and bytes that are cut off', () => {
+  it('refuse other bytes and bytes that are cut off', async () => {
     expect(() => decodeColumns(new TextEncoder().encode('no columns at all'))).toThrow(RangeError)
-    expect(() => decodeColumns(encodeColumns(small).subarray(0, -8))).toThrow(RangeError)
+    const whole = await encoded(small)
+    expect(() => decodeColumns(whole.subarray(0, -8))).toThrow(RangeError)
   })
 })
