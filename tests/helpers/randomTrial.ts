@@ -66,7 +66,7 @@ function limitsOf<M extends string, P extends string>(draw: Draw, measure: M, li
   const which = draw.one('size', 'level', 'two')
   return {
     size: which === 'level' ? null : { measure, limit, reading: draw.one(...readings) },
-    significance: which === 'size' ? null : { procedure: draw.one(...procedures), level: draw.one(0.05, 0.2, 0.45) },
+    significance: which === 'size' ? null : { procedure: draw.one(...procedures), level: draw.one(0.2, 0.05, 0.45) },
     broken: draw.one('either', 'both'),
   } as const
 }
@@ -76,35 +76,37 @@ function requirementOf(draw: Draw, kind: PrerequisiteKind, id: string, compariso
   switch (kind) {
     case 'normality': {
       const quantity = draw.one(...PREREQUISITES.normality.quantities[comparison.kind] ?? [])
-      const limits = limitsOf(draw, 'skewness', draw.one(0.2, 0.6, 1.2), READINGS, ['shapiro-wilk', 'anderson-darling'])
+      const limits = limitsOf(draw, 'skewness', draw.one(0.3, 0.1, 0.8), READINGS, ['shapiro-wilk', 'anderson-darling'])
       const adjustable = quantity === 'values-within-arms' && limits.significance !== null
-      return { id, kind, quantity, limits, minimum: draw.one(8, 9, 14), multiplicity: adjustable ? draw.one('none', 'bonferroni', 'holm') : 'none', otherReading: otherReading(draw) }
+      return { id, kind, quantity, limits, minimum: draw.one(8, 9, ...id.startsWith('r') ? [30, 45] : [20]), multiplicity: adjustable ? draw.one('none', 'bonferroni', 'holm') : 'none', otherReading: otherReading(draw) }
     }
     case 'equal-spread': {
       const readings: readonly Reading[] = arms && comparison.arms.length > 2 ? ['estimate'] : READINGS
-      return { id, kind, quantity: 'values-within-arms', limits: limitsOf(draw, 'sd-ratio', draw.one(1.1, 1.6, 2.5), readings, ['brown-forsythe']), minimum: draw.one(3, 5, 9), otherReading: otherReading(draw) }
+      return { id, kind, quantity: 'values-within-arms', limits: limitsOf(draw, 'sd-ratio', draw.one(1.2, 1.05, 2), readings, ['brown-forsythe']), minimum: draw.one(3, 5, ...id.startsWith('r') ? [14, 25] : [12]), otherReading: otherReading(draw) }
     }
     case 'symmetry': return {
       id, kind, quantity: comparison.kind === 'occasions' ? 'differences' : 'values',
-      limits: { size: { measure: 'skewness', limit: draw.one(0.2, 0.6, 1.2), reading: draw.one(...READINGS) } }, minimum: draw.one(3, 8), otherReading: otherReading(draw),
+      limits: { size: { measure: 'skewness', limit: draw.one(0.3, 0.1, 0.8), reading: draw.one(...READINGS) } }, minimum: draw.one(3, 8), otherReading: otherReading(draw),
     }
     case 'positive-values': return { id, kind }
     case 'count': return {
       id, kind, scope: arms ? draw.one('per-arm', 'in-all') : 'in-all',
-      least: draw.chance(60) ? { kind: 'number', n: draw.int(1, 12) } : { kind: 'share-of-expected', share: draw.one(0.1, 0.3, 0.6, 1) },
+      least: draw.chance(60) ? { kind: 'number', n: draw.one(2, 5, 3, 12) } : { kind: 'share-of-expected', share: draw.one(0.1, 0.3, 0.2, 1) },
     }
-    case 'missing-values': return { id, kind, scope: arms ? draw.one('compared-arms', 'all-arms') : 'all-arms', most: draw.one(0, 0.1, 0.25, 0.6) }
+    case 'missing-values': return { id, kind, scope: arms ? draw.one('compared-arms', 'all-arms') : 'all-arms', most: draw.one(0.25, 0.1, 0.6, 0) }
   }
 }
 
 function requirementsOf(draw: Draw, prefix: string, most: number, comparison: Comparison): Requirement[] {
-  const kinds = PREREQUISITE_KINDS.filter(kind => PREREQUISITES[kind].comparisons.includes(comparison.kind))
+  const possible = PREREQUISITE_KINDS.filter(kind => PREREQUISITES[kind].comparisons.includes(comparison.kind))
+  // Shape and spread decide most walks, so they are drawn more often.
+  const kinds = [...possible, ...possible.filter(kind => PREREQUISITES[kind].consequences.includes('switch'))]
   return Array.from({ length: draw.one(2, most, 3, 1, 2, 0) }, (_, index) => requirementOf(draw, draw.one(...kinds), `${prefix}${index}`, comparison))
 }
 
 function triggerOf(draw: Draw, switches: readonly string[]): Trigger | null {
   if (switches.length === 0) return null
-  const kind = draw.one('exactly', 'at-least', 'any')
+  const kind = draw.one('any', 'at-least', 'exactly')
   if (kind === 'any') return { kind }
   const of = switches.filter(() => draw.chance(60))
   return { kind, of: of.length > 0 ? of : [switches[0]!] }
@@ -131,7 +133,7 @@ function analysisOf(draw: Draw, id: string, arms: readonly string[], derivation:
   const method = methodOf(draw, comparison)
   const prerequisites = requirementsOf(draw, 'p', 4, comparison).map((requirement): Prerequisite => {
     const [usual = 'hold', rare = 'reported-only'] = PREREQUISITES[requirement.kind].consequences
-    return { ...requirement, onFailure: draw.chance(85) ? usual : rare }
+    return { ...requirement, onFailure: draw.chance(92) ? usual : rare }
   })
   const analysis: PlannedAnalysis = {
     id, label: id, importance: 'other', estimand: null, endpoint: 'Y', analysisSet: 'FAS',
@@ -140,7 +142,7 @@ function analysisOf(draw: Draw, id: string, arms: readonly string[], derivation:
     nullValue: 1, direction: 'two-sided', alpha: 0.05, prerequisites, fallbacks: [], notAssessableLeadsTo: null,
   }
   const fallbacks = Array.from({ length: draw.one(2, 3, 1, 4, 0) }, (_, index) => fallbackOf(draw, `S${index}`, analysis, derivation)).filter(step => step !== null)
-  return { ...analysis, fallbacks, notAssessableLeadsTo: draw.one(null, ...fallbacks.map(step => step.id)) }
+  return { ...analysis, fallbacks, notAssessableLeadsTo: draw.one(...fallbacks.map(step => step.id), ...fallbacks.map(step => step.id), null) }
 }
 
 function planOf(draw: Draw): Plan {
@@ -178,10 +180,10 @@ function valueOf(draw: Draw, shape: string, scale: number): number {
 }
 
 function rowsOf(draw: Draw, subjects: readonly string[], arms: Readonly<Record<string, string>>): Row[] {
-  const shape = draw.one('bell', 'bell', 'skewed', 'skewed', 'coarse', 'signed', 'constant')
-  const wide = draw.one('A', 'B', '-')
-  const gaps = draw.one(0, 0, 5, 25)
-  const clean = draw.chance(85)
+  const shape = draw.one('skewed', 'bell', 'skewed', 'bell', 'coarse', 'signed', 'skewed', 'constant')
+  const wide = draw.one('A', 'B')
+  const gaps = draw.one(0, 0, 0, 4, 25)
+  const clean = draw.chance(90)
   return subjects.flatMap((subject) => {
     const inSet = draw.chance(92)
     return VISITS.flatMap((visit): Row[] => {
@@ -205,7 +207,7 @@ function allocate(draw: Draw, subjects: readonly string[], arms: readonly string
 
 /** Subjects whom neither of two allocations names, so that both say equally much. */
 function leaveOut(draw: Draw, allocation: Record<string, string>, subjects: readonly string[]): void {
-  if (subjects.length > 0 && draw.chance(10)) Reflect.deleteProperty(allocation, draw.one(...subjects))
+  if (subjects.length > 0 && draw.chance(8)) Reflect.deleteProperty(allocation, draw.one(...subjects))
 }
 
 export interface TrialPair { readonly trial: Trial, readonly otherAllocation: Trial['allocation'] }
@@ -215,11 +217,11 @@ export const trialPairs: fc.Arbitrary<TrialPair> = fc.gen().map((g) => {
   const draw = new Draw(g)
   const plan = planOf(draw)
   const arms = plan.arms.map(({ id }) => id)
-  const subjects = Array.from({ length: draw.one(30, 60, 45, 20, 12, 30, 60, 3, 0) }, (_, index) => `S${String(index).padStart(2, '0')}`)
+  const subjects = Array.from({ length: draw.one(30, 60, 45, 24, 12, 36, 54, 40, 48, 20, 28, 56, 3, 0) }, (_, index) => `S${String(index).padStart(2, '0')}`)
   const allocation = allocate(draw, subjects, arms)
   const other = allocate(draw, subjects, arms)
   const rows = rowsOf(draw, subjects, allocation)
-  const purpose = draw.one('interim', 'interim', 'database-lock')
+  const purpose = draw.one('interim', 'database-lock')
   const given = plan.blinding === 'open-label' || draw.chance(90)
   leaveOut(draw, allocation, subjects)
   leaveOut(draw, other, subjects)

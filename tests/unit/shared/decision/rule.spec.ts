@@ -10,7 +10,7 @@ import { naiveVerdict } from '../../../helpers/naiveRule'
 import { trials } from '../../../helpers/randomTrial'
 import { ruleOfTrial } from '../../../helpers/ruleOfTrial'
 
-const RUNS = { seed: 20261201, numRuns: 2000 }
+const RUNS = { seed: 20261201, numRuns: 2000, unbiased: true, endOnFailure: true }
 const LARGEST = 60
 
 describe('the decision rule', { timeout: 90_000 }, () => {
