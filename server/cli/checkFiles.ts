@@ -9,7 +9,7 @@ import { catalogue } from '../../shared/wording/catalogue'
 import { say } from '../../shared/wording/say'
 import { plannedArms, readAllocation } from '../readers/allocationList'
 import { findFault, proposeMapping, readCsvExtract, readHead } from '../readers/extractFile'
-import { missingRoles } from '../readers/mapping'
+import { undecidedRoles } from '../readers/mapping'
 import { findTreatmentColumn } from '../readers/treatment'
 import { BadInput } from './checkArguments'
 
@@ -89,7 +89,7 @@ export async function readExtractFile(path: string, plan: Plan, cleared: boolean
   if (treatment !== null) throw new BadInput(`${path}: column ${treatment}: ${say('en', 'problems.treatment-column')}`)
   const { complete, suggested, refused } = proposeMapping(plan, head, null)
   if (refused.length > 0) throw refusal(path, refused)
-  if (complete === null) throw new BadInput(`${path}: row 1: these columns cannot be told by their names: ${missingRoles(plan, suggested).join(', ')}`)
+  if (complete === null) throw new BadInput(`${path}: row 1: these columns cannot be told by their names: ${undecidedRoles(plan, suggested).join(', ')}`)
   const { columns, findings } = await readCsvExtract(createReadStream(path), plan, complete)
   if (columns === null) throw refusal(path, findings.list)
   return { columns, hash: await hashOf(path), subject: complete.subject, warnings: findings.list.map(worded) }

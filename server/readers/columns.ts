@@ -3,6 +3,7 @@ import type { ExtractColumns } from '../../shared/decision/columns'
 import type { Plan } from '../../shared/plan/schema'
 import { TextCells } from './cellText'
 import type { CsvRow } from './csv'
+import { DateColumn } from './dateColumn'
 import { FindingList, quoted } from './findings'
 import { IdSpelling } from './idSpelling'
 import { readNumber } from './numbers'
@@ -30,6 +31,7 @@ export class ColumnsBuilder {
   readonly #baseline: Source | null
   readonly #texts: readonly (Source & { readonly role: TextRole, readonly cells: string[] })[]
   readonly #flags: readonly (Source & { readonly flag: string, readonly cells: string[] })[]
+  readonly #dates: DateColumn
   readonly #cells = new TextCells()
   readonly #spelling = new IdSpelling()
   readonly #arms: ReadonlyMap<string, string>
@@ -39,7 +41,8 @@ export class ColumnsBuilder {
   readonly #values: number[] = []
   readonly #baselines: number[] = []
 
-  constructor(plan: Plan, header: readonly string[], mapping: ColumnMapping) {
+  /** @param cutOff calendar date up to which data should be in the file, or null when it is not known. */
+  constructor(plan: Plan, header: readonly string[], mapping: ColumnMapping, cutOff: string | null) {
     this.#plan = plan
     this.#header = header
     this.#subject = mapping.subject.map(name => sourceIn(header, name))
@@ -50,6 +53,7 @@ export class ColumnsBuilder {
       return name === null ? [] : [{ ...sourceIn(header, name), role, cells: [] }]
     })
     this.#flags = Object.entries(mapping.flags).map(([flag, name]) => ({ ...sourceIn(header, name), flag, cells: [] }))
+    this.#dates = new DateColumn(header, cutOff)
     this.#arms = new Map(plan.arms.flatMap(({ id, label }) => [[label, id], [id, id]] as const))
   }
 
@@ -58,6 +62,7 @@ export class ColumnsBuilder {
       return this.findings.add('refuse', 'row-width', { row }, { cells: cells.length, columns: this.#header.length })
     }
     const subject = this.#readSubject(row, cells)
+    this.#dates.check(row, cells, this.findings)
     this.#sourceRow.push(row)
     this.#subjects.push(subject)
     this.#values.push(this.#readNumber(row, this.#value, cells))

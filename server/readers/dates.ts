@@ -2,7 +2,7 @@
 const SHAPE = /^(\d{4})(?:-(\d{2})(?:-(\d{2})(?:T\S*)?)?)?$/
 
 export type DateReading
-  = | { readonly kind: 'date', readonly text: string, readonly complete: boolean }
+  = | { readonly kind: 'date', readonly text: string }
     | { readonly kind: 'missing' }
     | { readonly kind: 'impossible' }
     | { readonly kind: 'other-notation' }
@@ -13,7 +13,7 @@ function daysOf(year: number, month: number): number {
 }
 
 /**
- * Reads a cell as a calendar date. A date in another notation is not interpreted: whether 03/04 is March or
+ * Reads a cell as a calendar date, `text` being as much of it as is given. A date in another notation is not interpreted: whether 03/04 is March or
  * April nobody can tell from the file.
  */
 export function readDate(cell: string): DateReading {
@@ -25,5 +25,5 @@ export function readDate(cell: string): DateReading {
   const monthExists = month === undefined || (Number(month) >= 1 && Number(month) <= 12)
   const dayExists = day === undefined || (Number(day) >= 1 && Number(day) <= daysOf(Number(year), Number(month)))
   if (!monthExists || !dayExists) return { kind: 'impossible' }
-  return { kind: 'date', text: text.slice(0, 10), complete: day !== undefined }
+  return { kind: 'date', text: text.slice(0, 10) }
 }

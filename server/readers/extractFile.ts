@@ -94,13 +94,14 @@ const refusedUnread = (finding: Finding, soFar?: FindingSummary): FindingSummary
  * Reads a CSV extract whole, once it is known which column is what.
  *
  * @param mapping a mapping without faults for this file's header (`mappingFaults`).
+ * @param cutOff calendar date up to which data should be in the file, or null when it is not known.
  * @returns typed columns, or none with the findings that refuse the file. Every finding names row and column.
  */
-export async function readCsvExtract(source: AsyncIterable<Uint8Array>, plan: Plan, mapping: ColumnMapping): Promise<ExtractReading> {
+export async function readCsvExtract(source: AsyncIterable<Uint8Array>, plan: Plan, mapping: ColumnMapping, cutOff: string | null = null): Promise<ExtractReading> {
   let builder: ColumnsBuilder | null = null
   try {
     const file = await openCsv(source)
-    builder = new ColumnsBuilder(plan, file.header, mapping)
+    builder = new ColumnsBuilder(plan, file.header, mapping, cutOff)
     noteFormat(file, mapping, builder.findings)
     for await (const row of file.rows) {
       builder.add(row)

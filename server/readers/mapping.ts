@@ -118,15 +118,19 @@ function stillThere(remembered: ColumnMapping, find: Find): SuggestedMapping {
 /** Whether a suggestion leaves nothing for a person to decide, and the mapping that it makes. */
 export function completeMapping(plan: Plan, suggested: SuggestedMapping): ColumnMapping | null {
   const { subject, value, flags = {}, parameter = null, visit = null, baseline = null, unit = null, arm = null } = suggested
-  if (subject === undefined || value === undefined || unit === null || missingRoles(plan, suggested).length > 0) return null
+  if (subject === undefined || value === undefined || undecidedRoles(plan, suggested).length > 0) return null
   return {
     subject, value, parameter, visit, baseline, unit, arm, flags,
     site: suggested.site ?? null, imputed: suggested.imputed ?? null,
   }
 }
 
+/** What a person has to decide, by the names that ADaM files have for it: all that is missing, and the unit. */
+export const undecidedRoles = (plan: Plan, suggested: SuggestedMapping): string[] =>
+  [...missingRoles(plan, suggested), ...suggested.unit ? [] : ['AVALU']]
+
 /** What a mapping still lacks of that without which nothing can be judged, by the names that ADaM files have for it. */
-export function missingRoles(plan: Plan, { subject, value, parameter, visit, baseline, arm, flags = {} }: SuggestedMapping): string[] {
+function missingRoles(plan: Plan, { subject, value, parameter, visit, baseline, arm, flags = {} }: SuggestedMapping): string[] {
   const needs = columnNeeds(plan)
   const missing = [
     ...(subject ? [] : ['USUBJID']),

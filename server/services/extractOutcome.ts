@@ -24,9 +24,11 @@ export interface Accepted {
 export const refused = (findings: readonly Finding[]): Extract<Outcome, { state: 'sealed' | 'refused' }> =>
   ({ state: 'refused', mapping: null, findings: { list: findings, counts: { refuse: findings.length, hold: 0, warn: 0 } } })
 
+interface Reading { readonly blobId: string, readonly plan: Plan, readonly mapping: ColumnMapping, readonly cutOff: string }
+
 /** Reads a file whole by its mapping. The columns of an accepted one are stored in binary form. */
-export async function accepted(db: Database, { blobId, plan, mapping }: { readonly blobId: string, readonly plan: Plan, readonly mapping: ColumnMapping }): Promise<Outcome> {
-  const { columns, rows, subjects, findings } = await readCsvExtract(readBlob(db, blobId), plan, mapping)
+export async function accepted(db: Database, { blobId, plan, mapping, cutOff }: Reading): Promise<Outcome> {
+  const { columns, rows, subjects, findings } = await readCsvExtract(readBlob(db, blobId), plan, mapping, cutOff)
   if (columns === null) return { state: 'refused', findings, mapping }
   const { id: columnsBlobId } = await putBlob(db, encodeColumns(columns))
   return { state: 'accepted', findings, mapping, columnsBlobId, rows, subjects }

@@ -72,13 +72,13 @@ async function unreadable(db: Database, { blob, commitment }: Inspected): Promis
   return refused([fault, ...sealed])
 }
 
-async function outcomeOf(db: Database, plan: SignedPlan, studyId: StudyId, inspected: Inspected): Promise<Outcome> {
+async function outcomeOf(db: Database, plan: SignedPlan, { studyId, cutOff }: UploadExtract, inspected: Inspected): Promise<Outcome> {
   const { head, blob, treatment } = inspected
   if (treatment !== null) return { ...refused([treatmentFinding(treatment)]), state: 'sealed' }
   if (head === null) return unreadable(db, inspected)
   const { complete, refused: faults } = proposeMapping(plan.document, head, await rememberedMapping(db, studyId))
   if (faults.length > 0) return refused(faults)
-  return complete === null ? { state: 'awaiting-mapping' } : accepted(db, { blobId: blob.id, plan: plan.document, mapping: complete })
+  return complete === null ? { state: 'awaiting-mapping' } : accepted(db, { blobId: blob.id, plan: plan.document, mapping: complete, cutOff })
 }
 
 /**
@@ -94,7 +94,7 @@ export async function uploadExtract(db: Database, upload: UploadExtract) {
   const { plan, receivedAt } = await planNow(db, studyId)
   const inspected = await takeIn(db, plan, upload)
   const received: Received = { studyId, plan, receivedAt, fileName, cutOff, purpose, viewer, ...inspected }
-  const outcome = await outcomeOf(db, plan, studyId, inspected)
+  const outcome = await outcomeOf(db, plan, upload, inspected)
   const extractId = await db.transaction(tx => enterExtract(tx, received, outcome))
   if (inspected.treatment !== null) throw new DomainError('treatment-column', [{ row: 1, column: inspected.treatment, code: 'treatment-column', params: { column: inspected.treatment } }])
   return viewExtract(db, { studyId, extractId, viewer })

@@ -40,7 +40,7 @@ export async function mapExtract(db: Database, { mapping, ...at }: At & { readon
   const plan = await readSignedPlan(db, { studyId, planId: row.planId })
   const faults = mappingFaults(plan.document, row.columns, mapping)
   if (faults.length > 0) throw new DomainError('invalid-input', faults)
-  const outcome = await accepted(db, { blobId: row.blobId, plan: plan.document, mapping })
+  const outcome = await accepted(db, { blobId: row.blobId, plan: plan.document, mapping, cutOff: row.cutOff })
   return db.transaction(async (tx) => {
     const { number, cutOff, purpose } = await lockExtract(tx, at, ['awaiting-mapping'])
     const values = await outcomeValues(tx, { studyId, plan, cutOff, purpose }, outcome)

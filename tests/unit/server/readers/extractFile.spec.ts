@@ -113,6 +113,23 @@ describe('readCsvExtract', () => {
   })
 })
 
+describe('dates', () => {
+  const mapping = { subject: ['USUBJID'], parameter: 'PARAMCD', visit: 'AVISIT', value: 'AVAL', baseline: 'BASE', unit: 'AVALU', site: null, imputed: null, arm: null, flags: { FASFL: 'FASFL', ANL01FL: 'ANL01FL' } }
+  const dated = (...dates: string[]) => [`${HEADER},ADT`, `${CRP},`, ...dates.map(date => `${row()},${date}`)].join('\n')
+  const read = (cutOff: string | null, ...dates: string[]) => readCsvExtract(stream(dated(...dates)), readerPlan(), mapping, cutOff)
+
+  it('that do not exist refuse the file', async () => {
+    const { columns, findings } = await read(null, '2026-02-28', '2026-02-30')
+    expect(columns).toBeNull()
+    expect(findings.list).toEqual([{ severity: 'refuse', code: 'date-impossible', row: 4, column: 'ADT', params: { text: '2026-02-30' } }])
+  })
+
+  it('after the cut-off are warned about, partial ones as far as they go', async () => {
+    const { findings } = await read('2026-03-15', '2026-03-15', '2026-03-16', '2026-03', '2026-04', '16.03.2026')
+    expect(findings.list.map(({ code, row, params }) => [code, row, params.date])).toEqual([['after-cut-off', 4, '2026-03-16'], ['after-cut-off', 6, '2026-04']])
+  })
+})
+
 describe('arms of an open-label extract', () => {
   const open = readerPlan({ blinding: 'open-label' })
   const withArm = (...rows: (readonly [string, string])[]) => [`${HEADER},TRTP`, ...rows.map(([line, arm]) => `${line},${arm}`)].join('\n')

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest'
 import type { ColumnMapping } from '#shared/contract/extracts'
-import { completeMapping, headerFaults, mappingFaults, missingRoles, suggestMapping } from '../../../../server/readers/mapping'
+import { completeMapping, headerFaults, mappingFaults, suggestMapping, undecidedRoles } from '../../../../server/readers/mapping'
 import { plainReaderPlan, readerPlan } from '../../../helpers/readerPlan'
 
 const adam = ['STUDYID', 'USUBJID', 'SITEID', 'PARAMCD', 'AVISIT', 'AVAL', 'BASE', 'AVALU', 'DTYPE', 'FASFL', 'ANL01FL']
@@ -31,13 +31,14 @@ describe('suggestMapping and completeMapping', () => {
     const plan = plainReaderPlan()
     const small = suggestedFor(['USUBJID', 'AVAL', 'AVALU', 'FASFL'], [], plan)
     expect(completeMapping(plan, small)).toMatchObject({ parameter: null, visit: null, baseline: null, flags: { FASFL: 'FASFL' } })
-    expect(missingRoles(readerPlan(), small)).toEqual(['PARAMCD', 'AVISIT', 'BASE', 'ANL01FL'])
+    expect(undecidedRoles(readerPlan(), small)).toEqual(['PARAMCD', 'AVISIT', 'BASE', 'ANL01FL'])
   })
 
   it('ask a person when no column states the unit, and read it from PARAM where every text ends with it', () => {
     const header = adam.map(name => name === 'AVALU' ? 'PARAM' : name)
     const row = (text: string) => header.map(name => name === 'PARAM' ? text : 'x')
     expect(completeMapping(readerPlan(), suggestedFor(header, [row('Pain score')]))).toBeNull()
+    expect(undecidedRoles(readerPlan(), suggestedFor(header, [row('Pain score')]))).toEqual(['AVALU'])
     expect(completeMapping(readerPlan(), suggestedFor(header, [row('Pain score (mm)'), row('CRP (µg/mL)')]))).toMatchObject({ unit: 'PARAM' })
   })
 
