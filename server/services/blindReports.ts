@@ -24,7 +24,7 @@ export interface BlindAnalyses {
 }
 
 /** Planned analyses of a check whose verdicts may be told to everybody. */
-export async function releasedAnalyses(db: Queryable, checkId: CheckId): Promise<ReadonlySet<string>> {
+async function releasedAnalyses(db: Queryable, checkId: CheckId): Promise<ReadonlySet<string>> {
   const rows = await db.select({ analyses: release.analyses }).from(release).where(eq(release.checkId, checkId))
   return new Set(rows.flatMap(({ analyses }) => analyses))
 }

@@ -16,7 +16,7 @@ import type { ToldVerdict } from './deviationRules'
 export interface DeviationAddress { readonly studyId: StudyId, readonly deviationId: DeviationId }
 
 /** A released verdict of a deviation with the extract and plan version it belongs to. */
-export interface EntryFacts {
+interface EntryFacts {
   readonly entry: typeof deviationEntry.$inferSelect & { readonly verdict: ToldVerdict }
   readonly extract: typeof extract.$inferSelect
   readonly planVersion: number

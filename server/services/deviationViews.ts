@@ -22,7 +22,7 @@ export function registeredAnalysis({ check: { plan }, row }: DeviationFacts): Pl
 }
 
 /** Overruled means: by two, and nothing newer has reopened it. */
-export const isOverruled = ({ row, settlements }: DeviationFacts): boolean => {
+const isOverruled = ({ row, settlements }: DeviationFacts): boolean => {
   const last = settlements[settlements.length - 1]
   return row.state !== 'open' && last?.kind === 'overrule' && last.secondBy !== null
 }
@@ -65,7 +65,7 @@ async function summaryOf(db: Queryable, facts: DeviationFacts, now: Date) {
  * Prerequisites that failed, as far as they may be named; null when none of them may be and one at least stays
  * behind the blind.
  */
-export function failedPrerequisites({ seen }: DeviationFacts) {
+function failedPrerequisites({ seen }: DeviationFacts) {
   const switches = seen.prerequisites.filter(({ consequence }) => consequence === 'switch')
   const failed = switches.filter(({ verdict }) => verdict === 'not-met')
   if (failed.length === 0 && switches.some(({ verdict }) => verdict === 'held')) return null

@@ -18,7 +18,7 @@ import { memoRecord } from './memoRecord'
 import { printedSignature, printedSignatures } from './printedSignatures'
 import { unscheduledExtracts } from './unscheduledExtracts'
 
-export type SettlementRow = typeof settlement.$inferSelect
+type SettlementRow = typeof settlement.$inferSelect
 
 export interface MemoSources {
   readonly facts: DeviationFacts

@@ -23,12 +23,12 @@ export interface Axis {
   readonly ticks: readonly Tick[]
 }
 
-export interface Tick { readonly value: number, readonly label: string }
+interface Tick { readonly value: number, readonly label: string }
 
 /** What a mark stands for; decides its ink (`INKS`). */
 export type Role = 'data' | 'fitted' | 'reference'
 
-export interface Bar { readonly from: number, readonly to: number, readonly height: number }
+interface Bar { readonly from: number, readonly to: number, readonly height: number }
 export interface Dot { readonly x: number, readonly y: number }
 export interface Line { readonly role: Role, readonly points: readonly Dot[] }
 /** Region between two curves over the same x. */

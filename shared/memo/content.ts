@@ -103,14 +103,14 @@ export interface MemoVerdict {
 
 export type BlindStatus = 'open-label' | 'blind-holds' | 'blind-broken'
 
-export interface MemoBlinding {
+interface MemoBlinding {
   /** When the verdict was released, and when it was settled. */
   readonly atVerdict: BlindStatus
   readonly atSettlement: BlindStatus
   readonly brokenAt: string | null
 }
 
-export interface MemoCourse {
+interface MemoCourse {
   readonly extract: { readonly number: number, readonly title: string, readonly cutOff: string }
   readonly planVersion: number
   readonly verdict: { readonly word: SeenVerdict, readonly step: string | null, readonly reason: string | null }
