@@ -24,7 +24,8 @@ const content = memoFixture(say)
 const bytesOf = (of: MemoContent) => Buffer.from(canonicalize(of) ?? '')
 const contentHash = sha256(bytesOf(content))
 
-const run = (tool: string, ...options: string[]) => execFileSync(tool, options, { encoding: 'utf8', env: { ...process.env, LC_ALL: 'C.UTF-8' } })
+const run = (tool: string, ...options: string[]) =>
+  execFileSync(tool, options, { encoding: 'utf8', stdio: ['ignore', 'pipe', 'ignore'], env: { ...process.env, LC_ALL: 'C.UTF-8' } })
 
 /** pdfsig answers with another exit code when it finds nothing valid; only what it says counts here. */
 function pdfsig(path: string): string {
@@ -64,7 +65,7 @@ describe('signature of the file', () => {
     changed[at] = (changed[at] ?? 0) ^ 1
     const path = join(folder, `changed-${share}.pdf`)
     await writeFile(path, changed)
-    expect(pdfsig(path)).not.toContain('Signature is Valid')
+    expect(pdfsig(path)).toContain('Digest Mismatch')
   })
 
   it('is invalid after one changed byte behind the signature', async () => {
