@@ -105,3 +105,14 @@ export function naiveVerdict(trial: Trial, analysis: PlannedAnalysis): NaiveVerd
   const verdict = walkFrom(situation, 0, failed, false)
   return verdict.word === 'not-assessable' ? goOn(situation, verdict, failed) : verdict
 }
+
+/** What is decided by causes that need no arms: all of it in an analysis without arms; null where arms tell. */
+export function naiveArmFree(trial: Trial, analysis: PlannedAnalysis): NaiveVerdict | null {
+  const situation = new Situation(trial, analysis)
+  const verdict = naiveVerdict(trial, analysis)
+  if (!situation.needsArms() || queryOpen(situation) || trial.allocation === null) return verdict
+  const cause = trial.rows.length === 0 || holdReason(situation, true) !== null
+  if (!cause) return null
+  const leadsTo = analysis.fallbacks.findIndex(({ id }) => id === analysis.notAssessableLeadsTo)
+  return situation.atTheEnd() && leadsTo >= 0 && hangsOnArms(situation, leadsTo) ? null : verdict
+}

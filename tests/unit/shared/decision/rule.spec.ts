@@ -2,16 +2,23 @@ import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { consistency } from '#shared/plan/consistency'
 import { ANALYSIS_VERDICTS, REASONS } from '#shared/plan/terms'
+import type { VerdictReport } from '#shared/decision/report'
 import { decodeDecision } from '#shared/decision/codes'
 import { makeWorkspace } from '#shared/decision/compileRule'
 import { runRule } from '#shared/decision/runRule'
 import { judgeTrial } from '../../../helpers/judgeTrial'
-import { naiveVerdict } from '../../../helpers/naiveRule'
+import { naiveArmFree, naiveVerdict, type NaiveVerdict } from '../../../helpers/naiveRule'
 import { trials } from '../../../helpers/randomTrial'
 import { ruleOfTrial } from '../../../helpers/ruleOfTrial'
 
 const RUNS = { seed: 20261201, numRuns: 2000, unbiased: true, endOnFailure: true }
 const LARGEST = 60
+
+function told(verdict: VerdictReport | null): NaiveVerdict | null {
+  if (verdict === null) return null
+  const { word, step, reason, setAside } = verdict
+  return { word, step, reason, setAside }
+}
 
 describe('the decision rule', { timeout: 90_000 }, () => {
   it('is only ever asked about consistent plans here', () => {
@@ -23,12 +30,16 @@ describe('the decision rule', { timeout: 90_000 }, () => {
   it('gives the verdict of a naive reading of the rule, on every branch', () => {
     const words = new Set<string>()
     const reasons = new Set<string | null>()
-    const went = { on: 0, stopped: 0 }
+    const went = { on: 0, stopped: 0, byArms: 0, onArmFree: 0 }
     fc.assert(fc.property(trials, (trial) => {
       const report = judgeTrial(trial)
       trial.plan.analyses.forEach((analysis, index) => {
-        const { word, step, reason, setAside } = report.analyses[index]!.verdict
-        expect({ word, step, reason, setAside }).toEqual(naiveVerdict(trial, analysis))
+        const { verdict, armFreeVerdict } = report.analyses[index]!
+        const { word, step, reason, setAside } = verdict
+        expect(told(verdict)).toEqual(naiveVerdict(trial, analysis))
+        expect(told(armFreeVerdict)).toEqual(naiveArmFree(trial, analysis))
+        if (armFreeVerdict === null) went.byArms++
+        else if (step !== null && setAside !== null && report.analyses[index]!.dependsOnArms) went.onArmFree++
         words.add(word)
         reasons.add(reason)
         if (setAside !== null && step !== null) went.on++
@@ -39,6 +50,8 @@ describe('the decision rule', { timeout: 90_000 }, () => {
     expect(REASONS.filter(reason => reason !== 'check-too-weak' && !reasons.has(reason))).toEqual([])
     expect(went.on).toBeGreaterThan(50)
     expect(went.stopped).toBeGreaterThan(20)
+    expect(went.byArms).toBeGreaterThan(300)
+    expect(went.onArmFree).toBeGreaterThan(3)
   })
 
   it('runs to the same code in a loop, on a workspace used before', () => {
