@@ -47,7 +47,6 @@ export default defineNuxtConfig({
 
   nitro: {
     inlineDynamicImports: false, // the dev preset's `true` would run worker and migration inside the dev server
-    errorHandler: '~~/server/error.ts',
     esbuild: { options: { target: 'es2022' } },
     rollupConfig: {
       output: { manualChunks: () => undefined }, // else a worker would start the whole application
@@ -74,6 +73,13 @@ export default defineNuxtConfig({
     tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } },
   },
   telemetry: false,
+
+  hooks: {
+    'nitro:config'(config) {
+      // Problems for the interface come first; pages keep the error page that Nuxt renders.
+      config.errorHandler = [path('./server/error.ts'), config.errorHandler ?? []].flat()
+    },
+  },
 
   auth: {
     originEnvKey: 'AUTH_ORIGIN',

@@ -2,6 +2,7 @@ import { afterAll, beforeAll, describe, expect, it } from 'vitest'
 import { healthOperation } from '#shared/contract/health'
 import type { Problem } from '#shared/contract/problems'
 import { viewerOperation } from '#shared/contract/session'
+import { catalogue } from '#shared/wording/catalogue'
 import { Client } from '../helpers/client'
 import { fromEnvironment } from '../helpers/database'
 import { Gate, startServer, type OwnServer } from '../helpers/ownServer'
@@ -61,6 +62,17 @@ describe('a database that goes away', () => {
     await gate.open()
     await until(200)
     expect((await client.send(viewerOperation)).status).toBe(200)
+  })
+
+  it('is told on a page as well', async () => {
+    await gate.shut()
+    const page = await client.request('/', { headers: { accept: 'text/html' } })
+    expect(page.status).toBe(503)
+    expect(page.headers.get('content-type')).toContain('text/html')
+    expect(await page.text()).toContain(catalogue.en.base.errorPage.unavailable)
+    await gate.open()
+    await until(200)
+    expect((await client.request('/', { headers: { accept: 'text/html' } })).status).toBe(200)
   })
 
   it('stays a matter of codes in the log', () => {

@@ -2,6 +2,7 @@ import { beforeAll, describe, expect, it } from 'vitest'
 import { createPersonOperation } from '#shared/contract/people'
 import { createStudyOperation, listStudiesOperation, readStudyOperation } from '#shared/contract/studies'
 import type { Problem } from '#shared/contract/problems'
+import { catalogue } from '#shared/wording/catalogue'
 import type { Client } from '../helpers/client'
 import { makeClient } from '../helpers/server'
 
@@ -62,6 +63,13 @@ describe('requests that cannot be accepted', () => {
       expect(await response.json()).toMatchObject({ status, code, errors: [] })
     }
     expect((await administrator.request('/api/studies', { method: 'DELETE' })).headers.get('allow')?.split(', ').sort()).toEqual(['GET', 'POST'])
+  })
+
+  it('answers an unknown page with a page', async () => {
+    const response = await administrator.request('/no-such-page', { headers: { accept: 'text/html' } })
+    expect(response.status).toBe(404)
+    expect(response.headers.get('content-type')).toContain('text/html')
+    expect(await response.text()).toContain(catalogue.en.base.errorPage.notFound)
   })
 
   it('reads an identifier that is none like a study that is not there', async () => {

@@ -1,7 +1,6 @@
 import { createError } from 'h3'
 import { describe, expect, it } from 'vitest'
 import { PROBLEMS } from '#shared/contract/problems'
-import { catalogue } from '#shared/wording/catalogue'
 import { isDatabaseUnavailable, violatesUnique } from '../../../server/database/failures'
 import { DomainError } from '../../../server/domainError'
 import { errorFacts } from '../../../server/log'
@@ -60,11 +59,4 @@ describe('violatesUnique', () => {
     expect(violatesUnique(error, 'study_protocol_number_unique')).toBe(false)
     expect(violatesUnique(wrapped(coded('23503', { constraint_name: 'person_email_unique' })), 'person_email_unique')).toBe(false)
   })
-})
-
-it('every text of a finding fits the figures it names', () => {
-  const allowed = new Set(['minimum', 'maximum', 'options'])
-  for (const text of Object.values(catalogue.en.problems.detail)) {
-    for (const [, name] of text.matchAll(/\{(\w+)\}/g)) if (!allowed.has(name!)) expect(text).toBe('a text whose figures are known')
-  }
 })
