@@ -1,7 +1,7 @@
 import type { Allocation } from '../../shared/decision/columns'
 import type { Plan } from '../../shared/plan/schema'
 import { openCsv, type CsvFile, type CsvRow } from './csv'
-import { FindingList, quoted, UnreadableFile, type FindingSummary } from './findings'
+import { FindingList, quoted, UnreadableFile, type FindingCode, type FindingSummary } from './findings'
 import { subjectKey } from './subjectKey'
 
 /** One subject of the list; arms are the plan's codes. */
@@ -96,7 +96,7 @@ class AllocationRows {
     return { subject: subjectKey(parts), planned: plannedArm, actual: actualArm, stratum: stratum === null ? null : cells[stratum] || null }
   }
 
-  #arm(row: number, index: number, cells: readonly string[], whenEmpty: string | null): string | null {
+  #arm(row: number, index: number, cells: readonly string[], whenEmpty: FindingCode | null): string | null {
     const cell = cells[index] ?? ''
     const arm = this.#armOf(cell)
     if (arm === null && cell !== '') this.findings.add('refuse', 'unknown-arm', { row, column: this.#nameOf(index) }, { text: quoted(cell) })

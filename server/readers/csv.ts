@@ -3,7 +3,7 @@ import { CsvError, parse } from 'csv-parse'
 import { UnreadableFile } from './findings'
 import { textLines } from './utf8'
 
-export const DELIMITERS = { comma: ',', semicolon: ';', tab: '\t' } as const
+const DELIMITERS = { comma: ',', semicolon: ';', tab: '\t' } as const
 export type Delimiter = keyof typeof DELIMITERS
 
 /** One record. Row 1 is the header; empty lines count, as a spreadsheet counts them. */

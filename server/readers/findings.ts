@@ -1,6 +1,9 @@
 import type { Finding } from '../../shared/contract/extracts'
+import type { catalogue } from '../../shared/wording/catalogue'
 
-export type Severity = Finding['severity']
+type Severity = Finding['severity']
+/** What can be found in a file; each has its words. */
+export type FindingCode = keyof typeof catalogue['en']['extract']['findings']
 type Params = Finding['params']
 
 /** At most this many findings of a file are kept; all are counted. */
@@ -23,7 +26,7 @@ export class FindingList {
   readonly #kept: Record<Severity, Finding[]> = { refuse: [], hold: [], warn: [] }
   readonly #counts = { refuse: 0, hold: 0, warn: 0 }
 
-  add(severity: Severity, code: string, place: { row?: number | null, column?: string | null } = {}, params: Params = {}): void {
+  add(severity: Severity, code: FindingCode, place: { row?: number | null, column?: string | null } = {}, params: Params = {}): void {
     this.#counts[severity] += 1
     const kept = this.#kept[severity]
     if (kept.length < FINDINGS_KEPT) kept.push({ severity, code, row: place.row ?? null, column: place.column ?? null, params })
@@ -43,7 +46,7 @@ export class FindingList {
 export class UnreadableFile extends Error {
   readonly finding: Finding
 
-  constructor(code: string, place: { row?: number, column?: string } = {}, params: Params = {}) {
+  constructor(code: FindingCode, place: { row?: number, column?: string } = {}, params: Params = {}) {
     super(code)
     this.name = 'UnreadableFile'
     this.finding = { severity: 'refuse', code, row: place.row ?? null, column: place.column ?? null, params }

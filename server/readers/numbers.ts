@@ -1,5 +1,5 @@
 /** What a cell that is no number looks like; words stand under `extract.looks`. */
-export type NotANumber
+type NotANumber
   = | 'decimal-comma' | 'thousands' | 'censored' | 'minus-sign' | 'foreign-digits' | 'parentheses' | 'percent'
     | 'missing-code' | 'out-of-range' | 'other'
 

@@ -10,7 +10,7 @@ import { study } from '../database/schema/study'
 import { DomainError } from '../domainError'
 import { signedPlans, type SignedPlan } from './plans'
 
-export type ReleaseRow = typeof release.$inferSelect
+type ReleaseRow = typeof release.$inferSelect
 export type ExtractRow = typeof extract.$inferSelect
 type CheckRow = typeof check.$inferSelect
 

@@ -19,7 +19,7 @@ import { sign, signatureById, type Credentials } from './signatures'
 import { actorOf, type Viewer } from './viewer'
 
 type EventRow = typeof studyEvent.$inferSelect
-export type EventKind = EventRow['kind']
+type EventKind = EventRow['kind']
 type StudyRow = typeof study.$inferSelect
 
 /** Every event of a study, oldest first. */

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { ANALYSIS_VERDICTS, PLANNED_METHODS, REASONS } from '../plan/terms'
-import { MEASURES, type SeenAnalysis, type SeenReport } from '../decision/report'
+import type { SeenAnalysis, SeenReport } from '../decision/report'
 import { extractId } from '../schemas/domainIds'
 import { extractParams } from './extracts'
 import { defineOperation } from './operation'
@@ -62,7 +62,6 @@ export const verdictView = z.strictObject({
   deviation: z.strictObject({ id: uuid, number: z.number().int() }).nullable(),
 })
 export type VerdictView = z.infer<typeof verdictView>
-export const measureNames = z.enum(MEASURES)
 
 export const readLedgerOperation = defineOperation({
   id: 'ledger.read', method: 'GET', path: '/api/studies/[studyId]/ledger', action: 'ledger.read', scope: 'study',
