@@ -4,7 +4,7 @@ import { RateLimiterPostgres, RateLimiterRes } from 'rate-limiter-flexible'
 import type { Database } from '../database/client'
 import { DomainError } from '../domainError'
 
-export type AttemptKind = 'sign-in' | 'signature' | 'invitation'
+type AttemptKind = 'sign-in' | 'signature' | 'invitation'
 
 export interface Attempt {
   readonly kind: AttemptKind

@@ -8,7 +8,7 @@ import { person } from '../database/schema/person'
 import { appendRecord } from './record'
 import { actorOf, type Viewer } from './viewer'
 
-export type ExposureWay = typeof exposureWay.enumValues[number]
+type ExposureWay = typeof exposureWay.enumValues[number]
 
 export interface RecordExposure {
   readonly studyId: StudyId

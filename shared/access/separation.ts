@@ -6,7 +6,7 @@ export type EarlierDuty
  * Duties that may not lie in one hand, on top of the role × action table: for each duty, what whoever takes it
  * must not have done before to the same plan, extract, deviation or clearance.
  */
-export const SEPARATED = {
+const SEPARATED = {
   'plan.sign-reviewer': ['plan.author'],
   'allocation.upload': ['extract.upload', 'deviation.settle'],
   'extract.give-reason': ['extract.upload'],

@@ -1,6 +1,6 @@
 import { randomBytes, randomUUID } from 'node:crypto'
 import { hash } from '@node-rs/argon2'
-import { endClearanceOperation, grantClearanceOperation, proposeClearanceOperation } from '#shared/contract/clearances'
+import { grantClearanceOperation, proposeClearanceOperation } from '#shared/contract/clearances'
 import { grantMemberOperation } from '#shared/contract/members'
 import { createStudyOperation } from '#shared/contract/studies'
 import type { StudyRole } from '#shared/access/actions'
@@ -64,17 +64,13 @@ export async function clear(administrator: Client, { studyId, personId, proposer
   return administrator.call(grantClearanceOperation, { params: { studyId, clearanceId: id } })
 }
 
-export function endOfClearance(administrator: Client, { studyId, clearanceId }: { studyId: string, clearanceId: string }) {
-  return administrator.call(endClearanceOperation, { params: { studyId, clearanceId }, body: { reason: 'The test is over.' } })
-}
-
 /** Roles of a study as tests name them; two biostatisticians, one more who is cleared. */
 const CAST = {
   biostatistician: 'biostatistician', reviewer: 'biostatistician', cleared: 'biostatistician',
   dataManager: 'data-manager', investigator: 'investigator', monitor: 'monitor',
 } as const satisfies Record<string, StudyRole>
 
-export type CastName = keyof typeof CAST
+type CastName = keyof typeof CAST
 
 /** A study of its own with somebody signed in for every role, an administrator, and a stranger who is in no study. */
 export async function makeStudyWithRoles() {
