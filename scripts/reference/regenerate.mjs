@@ -14,6 +14,7 @@ const GENERATORS = [
   { name: 'spread', command: 'Rscript', script: 'spread.R' },
   { name: 'descriptive', command: 'Rscript', script: 'descriptive.R' },
   { name: 'distributions', command: 'Rscript', script: 'distributions.R' },
+  { name: 'decision', command: 'Rscript', script: 'decision.R' },
   // Debian's interpreter, which has Debian's mpmath, rather than whichever stands first on the path.
   { name: 'exact', command: '/usr/bin/python3', script: 'exact.py' },
 ]
