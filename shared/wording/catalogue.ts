@@ -2,7 +2,6 @@ import access from './en/access.json'
 import base from './en/base.json'
 import deviation from './en/deviation.json'
 import extract from './en/extract.json'
-import ledger from './en/ledger.json'
 import mail from './en/mail.json'
 import memo from './en/memo.json'
 import pages from './en/pages.json'
@@ -13,7 +12,7 @@ import verdict from './en/verdict.json'
 
 /** The words of the product by locale; each file is one namespace. */
 export const catalogue = {
-  en: { access, base, deviation, extract, ledger, mail, memo, pages, plan, problems, record, verdict },
+  en: { access, base, deviation, extract, mail, memo, pages, plan, problems, record, verdict },
 } as const
 
 export type Locale = keyof typeof catalogue

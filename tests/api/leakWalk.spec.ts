@@ -1,9 +1,9 @@
 import { eq } from 'drizzle-orm'
 import { beforeAll, describe, expect, it } from 'vitest'
 import { uploadAllocationOperation } from '#shared/contract/allocations'
-import { listDeviationsOperation } from '#shared/contract/deviations'
-import { uploadExtractOperation } from '#shared/contract/extracts'
-import { previewReleaseOperation, readArmsOperation, signReleaseOperation, type VerdictView } from '#shared/contract/ledger'
+import { listDeviationsOperation, listMemosOperation, settleOperation } from '#shared/contract/deviations'
+import { listExtractsOperation, uploadExtractOperation } from '#shared/contract/extracts'
+import { lockDatabaseOperation, previewReleaseOperation, readArmsOperation, signReleaseOperation, type VerdictView } from '#shared/contract/ledger'
 import type { ExtractId } from '#shared/schemas/domainIds'
 import type { StudyId } from '#shared/schemas/ids'
 import { check } from '../../server/database/schema/check'
@@ -39,34 +39,75 @@ async function makeCast(): Promise<Cast> {
   return { studyId, as }
 }
 
-/** One study from plan to judged look, by the interface alone; only the allocation differs between two of them. */
+type Part = keyof Cast['as']
+const signer = ({ as }: Cast, part: Part) => ({ identifier: as[part].email, password: as[part].password })
+
+async function bringIn({ studyId, as: { dataManager } }: Cast, content: string, purpose: 'interim' | 'database-lock'): Promise<ExtractId> {
+  const query = { fileName: 'adeff.csv', cutOff: purpose === 'interim' ? '2026-04-02' : '2026-06-11', purpose }
+  const { id } = await dataManager.client.call(uploadExtractOperation, { params: { studyId }, query, file: csv(content) })
+  return judged(studyId, id as ExtractId)
+}
+
+/** Judged here and now: whether or not a worker is quicker, the history is the same. */
+async function judged(studyId: string, extractId: ExtractId): Promise<ExtractId> {
+  await judgeNow(serverDatabase().db, { studyId: studyId as StudyId, extractId })
+  return extractId
+}
+
+/**
+ * One study from plan to database lock, by the interface alone: a look before and after the allocation is there,
+ * a file that was sealed, the decision point, locked. Two of them differ in nothing but the allocation.
+ */
 async function runStudy(kind: 'spread' | 'even') {
   const cast = await makeCast()
   const { studyId, as } = cast
+  const params = { studyId }
   const { planId, protocolNumber } = await registerPlan(cast)
-  const query = { fileName: 'adeff.csv', cutOff: '2026-04-02', purpose: 'interim' } as const
-  const { id: extractId } = await as.dataManager.client.call(uploadExtractOperation, { params: { studyId }, query, file: csv(trialFile()) })
-  const at = { studyId: studyId as StudyId, extractId: extractId as ExtractId }
-  await judgeNow(serverDatabase().db, at) // whether or not a worker is quicker, the history is the same
-  await as.dataManager.client.refused(uploadExtractOperation, { params: { studyId }, query: { ...query, fileName: 'with-arms.csv' }, file: csv(carryingArms(kind)) })
-  await as.cleared.client.call(uploadAllocationOperation, { params: { studyId }, query: { kind: 'true' }, file: csv(trialAllocation(kind)) })
-  await judgeNow(serverDatabase().db, at)
-  return { cast, studyId, planId, protocolNumber, extractId }
+  const look = await bringIn(cast, trialFile(), 'interim')
+  const query = { fileName: 'with-arms.csv', cutOff: '2026-04-02', purpose: 'interim' } as const
+  await as.dataManager.client.refused(uploadExtractOperation, { params, query, file: csv(carryingArms(kind)) })
+  await as.cleared.client.call(uploadAllocationOperation, { params, query: { kind: 'true' }, file: csv(trialAllocation(kind)) })
+  await judged(studyId, look)
+  const lock = await bringIn(cast, trialFile({ seed: 11 }), 'database-lock')
+  await as.dataManager.client.call(lockDatabaseOperation, { params, body: { ...signer(cast, 'dataManager'), extractId: lock, reason: null } })
+  const { extracts } = await as.monitor.client.call(listExtractsOperation, { params })
+  return { cast, studyId, planId, protocolNumber, look, lock, extractIds: extracts.map(({ id }) => id) }
 }
 type Run = Awaited<ReturnType<typeof runStudy>>
 
+/** A cleared member lets the verdicts of an extract out. */
+async function release({ cast, studyId }: Run, extractId: ExtractId): Promise<void> {
+  const { client } = cast.as.cleared
+  const params = { studyId, extractId }
+  const { hash } = await client.call(previewReleaseOperation, { params })
+  await client.call(signReleaseOperation, { params, body: { ...signer(cast, 'cleared'), hash } })
+}
+
+/** The deviation is settled in accordance with the plan, which makes its memo. */
+async function settleAll({ cast, studyId }: Run): Promise<void> {
+  const { client } = cast.as.reviewer
+  const { deviations } = await client.call(listDeviationsOperation, { params: { studyId } })
+  for (const { id: deviationId } of deviations) {
+    await client.call(settleOperation, { params: { studyId, deviationId }, body: { ...signer(cast, 'reviewer'), kind: 'accept-step', note: 'In accordance with the plan.' } })
+  }
+}
+
 const NOWHERE = '01935f7e-6a5c-7c4e-9f1d-2b6a8f0c4d21'
 
-function placesOf({ studyId, planId, extractId }: Run, deviationIds: readonly string[]): Places {
+async function placesOf({ cast: { as: { monitor: { client } } }, studyId, planId, extractIds }: Run): Promise<Places> {
+  const params = { studyId }
+  const { deviations } = await client.call(listDeviationsOperation, { params })
+  const { memos } = await client.call(listMemosOperation, { params })
+  const orNowhere = (list: readonly { readonly id: string }[]) => list.length > 0 ? list.map(({ id }) => id) : [NOWHERE]
   return {
-    studyId: [studyId], planId: [planId], extractId: [extractId], analysis: ['PAIN-T', 'PAIN-P'],
-    deviationId: deviationIds.length > 0 ? deviationIds : [NOWHERE], memoId: [NOWHERE], sessionId: [NOWHERE], personId: [NOWHERE],
+    studyId: [studyId], planId: [planId], extractId: extractIds, analysis: ['PAIN-T', 'PAIN-P'],
+    deviationId: orNowhere(deviations), memoId: orNowhere(memos), sessionId: [NOWHERE], personId: [NOWHERE],
   }
 }
 
 async function walk(run: Run): Promise<Record<typeof BLINDED[number], Reading[]>> {
-  const { deviations } = await run.cast.as.monitor.client.call(listDeviationsOperation, { params: { studyId: run.studyId } })
-  const readings = await Promise.all(BLINDED.map(async part => [part, await readEverything(run.cast.as[part].client, placesOf(run, deviations.map(({ id }) => id)))] as const))
+  const places = await placesOf(run)
+  const readings = await Promise.all(BLINDED.map(async part => [part, await readEverything(run.cast.as[part].client, places)] as const))
   return Object.fromEntries(readings) as Record<typeof BLINDED[number], Reading[]>
 }
 
@@ -116,14 +157,15 @@ describe('what members without clearance receive', () => {
   })
 
   it('holds no figure formed with arms, no arm of a subject and no hash over either, before and after the release', async () => {
-    const { cast: { as: { cleared } }, studyId, extractId } = spread
-    const params = { studyId, extractId }
+    const { cast, studyId, look, lock } = spread
     const before = await walk(spread)
-    const { hash } = await cleared.client.call(previewReleaseOperation, { params })
-    await cleared.client.call(signReleaseOperation, { params, body: { identifier: cleared.email, password: cleared.password, hash } })
+    await release(spread, look)
+    await release(spread, lock)
+    await settleAll(spread)
     const after = await walk(spread)
-    const figures = armFigures(await cleared.client.call(readArmsOperation, { params: { ...params, analysis: 'PAIN-T' } }))
-    expect(figures.length).toBeGreaterThan(10)
+    const arms = (extractId: string) => cast.as.cleared.client.call(readArmsOperation, { params: { studyId, extractId, analysis: 'PAIN-T' } })
+    const figures = [...armFigures(await arms(look)), ...armFigures(await arms(lock))]
+    expect(figures.length).toBeGreaterThan(20)
     const forbidden = [...figures, ...await sealedHashes(spread)]
 
     for (const { path, text } of [before, after].flatMap(walked => Object.values(walked).flat())) {
@@ -135,7 +177,9 @@ describe('what members without clearance receive', () => {
 
   it('tells the released word and what follows from it', async () => {
     const { monitor } = await walk(spread)
-    expect(monitor.find(({ operation }) => operation === 'ledger.read')?.text).toContain('fallback-applies')
-    expect(monitor.find(({ operation }) => operation === 'deviations.list')?.text).toContain('PAIN-T')
+    const textOf = (id: string) => monitor.filter(({ operation }) => operation === id).map(({ text }) => text).join('\n')
+    expect(textOf('ledger.read')).toContain('fallback-applies')
+    expect(textOf('deviations.read')).toContain('"binding":true')
+    expect(textOf('memos.list')).toContain('foreseen-switch')
   })
 })
