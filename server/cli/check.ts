@@ -1,54 +1,6 @@
-import { release } from '../../shared/blinding/release'
-import { contentHash } from '../../shared/decision/contentHash'
-import { judge } from '../../shared/decision/judge'
-import type { SeenReport } from '../../shared/decision/report'
-import type { Plan } from '../../shared/plan/schema'
-import { canonicalText } from '../../shared/record/canonical'
-import { say } from '../../shared/wording/say'
-import { BadInput, readArguments, type CheckArguments } from './checkArguments'
-import { readAllocationFile, readExtractFile, readPlanFile } from './checkFiles'
-import { reportText } from './checkText'
+import { runCheck } from './runCheck'
 
-/** The same rule without a database; its report goes through the same gate and stands in no ledger. */
-const STANDS = 0
-const BAD_INPUT = 2
-const SOMETHING_ELSE = 3
-const NOT_ASSESSABLE = 4
-const BLINDED = 5
-
-async function checked(given: CheckArguments, plan: Plan): Promise<{ report: SeenReport, warnings: readonly string[] }> {
-  const { columns, hash, subject, warnings } = await readExtractFile(given.extract, plan, given.arms)
-  if (given.allocation !== null && plan.blinding === 'open-label') throw new BadInput('--allocation: in an open-label plan the extract carries the arm')
-  const list = given.allocation === null ? null : await readAllocationFile(given.allocation, plan, subject)
-  const report = judge({
-    plan, columns, queries: {}, allocation: list && { state: 'true', ...list },
-    extract: { bytesHash: hash, contentHash: contentHash(columns), cutOff: given.cutOff, purpose: given.purpose, look: null, standing: 'outside-ledger' },
-  })
-  const state = { openLabel: plan.blinding === 'open-label', blindBroken: false, released: 'none', namesFailed: plan.release.namesFailed, registeredInLedger: false } as const
-  return { report: release(report, { cleared: given.arms }, state), warnings }
-}
-
-function exitCode({ analyses }: SeenReport, tells: boolean): number {
-  if (!tells) return BLINDED
-  const words = analyses.map(({ verdict }) => verdict.word)
-  if (words.includes('not-assessable')) return NOT_ASSESSABLE
-  return words.every(word => word === 'planned-method-stands') ? STANDS : SOMETHING_ELSE
-}
-
-async function main(): Promise<number> {
-  const given = readArguments(process.argv.slice(2))
-  const plan = await readPlanFile(given.plan)
-  const { report, warnings } = await checked(given, plan)
-  for (const warning of warnings) process.stderr.write(`${given.extract}: ${warning}\n`)
-  process.stdout.write(given.json ? `${canonicalText({ ledger: say('en', 'extract.commandLine.outside'), report })}\n` : reportText(plan, report))
-  return exitCode(report, given.arms || plan.blinding === 'open-label')
-}
-
-try {
-  process.exitCode = await main()
-}
-catch (error) {
-  if (!(error instanceof BadInput)) throw error
-  process.stderr.write(`${error.message}\n`)
-  process.exitCode = BAD_INPUT
-}
+const { code, out, errors } = await runCheck(process.argv.slice(2))
+for (const error of errors) process.stderr.write(`${error}\n`)
+process.stdout.write(out)
+process.exitCode = code

@@ -2,7 +2,7 @@ import type { Requirement } from '../../plan/prerequisiteSchema'
 import { residualsByOwnSdKernel, residualsKernel } from '../../statistics/descriptive/residuals'
 import type { SampleProblem } from '../../statistics/types'
 import { viewValues } from '../derive'
-import { type Deriving, type RuleSample, sizeOf, type TraceLayout, type Workspace } from '../rule'
+import { type Deriving, type RuleSample, sampleAt, sizeOf, type TraceLayout, VALUE, type Workspace } from '../rule'
 import { UNTOLD } from './limits'
 import { judgeShape, type ShapeLimits } from './shape'
 import { untoldFor, wholeVerdict } from './verdicts'
@@ -32,17 +32,23 @@ function formResiduals(quantity: Pooled, values: Float64Array, { offsets }: Rule
   return null
 }
 
+/** Sizes first: they stand in the report also where nothing else can be told. */
+function traceSizes(layout: TraceLayout, offsets: Uint32Array, { trace }: Workspace): void {
+  for (let sample = 0; sample < layout.samples; sample++) trace[sampleAt(layout, sample) + VALUE] = (offsets[sample + 1] ?? 0) - (offsets[sample] ?? 0)
+}
+
 /** Judges the shape of whatever the prerequisite names, on the values of one view. */
 export function shapeCheck(requirement: Normality | Symmetry, limits: ShapeLimits, view: number, deriving: Deriving, layout: TraceLayout) {
   const { quantity } = requirement
   return (sample: RuleSample, workspace: Workspace): number => {
+    workspace.pooled[1] = sizeOf(sample)
+    const offsets = quantity === 'values-within-arms' ? sample.offsets : workspace.pooled
+    traceSizes(layout, offsets, workspace)
     const values = viewValues(view, deriving, sample, workspace)
     if (values === null) return wholeVerdict(UNTOLD, 'procedure-undefined', limits.otherReading)
-    if (quantity === 'values-within-arms') return judgeShape(limits, layout, values, sample.offsets, workspace)
-    workspace.pooled[1] = sizeOf(sample)
-    if (!isPooled(quantity)) return judgeShape(limits, layout, values, workspace.pooled, workspace)
+    if (!isPooled(quantity)) return judgeShape(limits, layout, values, offsets, workspace)
     const problem = formResiduals(quantity, values, sample, workspace.quantity)
     if (problem !== null) return wholeVerdict(UNTOLD, untoldFor(problem), limits.otherReading)
-    return judgeShape(limits, layout, workspace.quantity, workspace.pooled, workspace)
+    return judgeShape(limits, layout, workspace.quantity, offsets, workspace)
   }
 }

@@ -63,8 +63,6 @@ function traceFigures(limits: ShapeLimits, layout: TraceLayout, values: Float64A
   for (let sample = 0; sample < layout.samples; sample++) {
     const start = offsets[sample] ?? 0
     const end = offsets[sample + 1] ?? start
-    const head = sampleAt(layout, sample)
-    workspace.trace[head + VALUE] = end - start
     workspace.pValues[sample] = 1
     if (end - start < limits.minimum) continue
     traceMoments(values, start, end, measure => figureAt(layout, sample, measure), workspace)

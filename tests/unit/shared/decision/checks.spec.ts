@@ -88,6 +88,11 @@ describe('normality', () => {
     expect(found).toMatchObject({ verdict: 'not-assessable', reason })
   })
 
+  it('says how many values there are where nothing else can be told', () => {
+    expect(judged(normality, [even(20), range(20, () => 0.1)]).samples).toEqual([{ arm: null, n: 40, figures: [], broken: null }])
+    expect(judged(shape({ quantity: 'values-within-arms', minimum: 30 }), [even(20), even(12)]).samples.map(({ n, figures }) => [n, figures])).toEqual([[20, []], [12, []]])
+  })
+
   it('takes the registered other reading and keeps the reason', () => {
     const read = (tooFewData: 'met' | 'not-met') => judged(shape({ minimum: 60, otherReading: { tooFewData, procedureUndefined: null } }), [even(20), even(20)])
     expect(read('met')).toMatchObject({ verdict: 'met', reason: 'too-few-data' })

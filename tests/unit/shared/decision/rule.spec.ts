@@ -2,7 +2,7 @@ import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { consistency } from '#shared/plan/consistency'
 import { ANALYSIS_VERDICTS, REASONS } from '#shared/plan/terms'
-import type { VerdictReport } from '#shared/decision/report'
+import type { AnalysisReport, VerdictReport } from '#shared/decision/report'
 import { decodeDecision } from '#shared/decision/codes'
 import { makeWorkspace } from '#shared/decision/compileRule'
 import { runRule } from '#shared/decision/runRule'
@@ -18,6 +18,14 @@ function told(verdict: VerdictReport | null): NaiveVerdict | null {
   if (verdict === null) return null
   const { word, step, reason, setAside } = verdict
   return { word, step, reason, setAside }
+}
+
+/** The step that stopped the walk carries its reason, and a check that could not be judged on data carries no figure. */
+function expectStop({ verdict, steps, prerequisites }: AnalysisReport): void {
+  const stopping = steps.find(({ step }) => step === verdict.step)
+  if (stopping !== undefined && verdict.word === 'not-assessable') expect(stopping).toMatchObject({ outcome: 'not-assessable', reason: verdict.reason })
+  const unjudged = ['data-query-open', 'analysis-set-undetermined', 'allocation-withheld']
+  for (const each of prerequisites.filter(({ reason }) => reason !== null && unjudged.includes(reason))) expect([each.samples, each.figures]).toEqual([[], []])
 }
 
 describe('the decision rule', { timeout: 90_000 }, () => {
@@ -40,6 +48,7 @@ describe('the decision rule', { timeout: 90_000 }, () => {
         expect(told(armFreeVerdict)).toEqual(naiveArmFree(trial, analysis))
         if (armFreeVerdict === null) went.byArms++
         else if (step !== null && setAside !== null && report.analyses[index]!.dependsOnArms) went.onArmFree++
+        expectStop(report.analyses[index]!)
         words.add(word)
         reasons.add(reason)
         if (setAside !== null && step !== null) went.on++
