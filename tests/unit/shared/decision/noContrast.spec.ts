@@ -1,4 +1,5 @@
 import { readdirSync, readFileSync } from 'node:fs'
+import { fileURLToPath } from 'node:url'
 import { join } from 'node:path'
 import { describe, expect, it } from 'vitest'
 import type { Requirement } from '#shared/plan/prerequisiteSchema'
@@ -105,7 +106,7 @@ describe('no treatment contrast', () => {
   })
 
   it('imports no comparison into the decision', () => {
-    const root = new URL('../../../../shared/', import.meta.url).pathname
+    const root = fileURLToPath(new URL('../../../../shared/', import.meta.url))
     const files = readdirSync(join(root, 'decision'), { recursive: true, encoding: 'utf8' }).filter(name => name.endsWith('.ts'))
     const imports = files.flatMap(name => [...readFileSync(join(root, 'decision', name), 'utf8').matchAll(/from '[^']*statistics\/([^']+)'/g)].map(match => match[1]!))
     expect(imports.length).toBeGreaterThan(10)

@@ -1,3 +1,4 @@
+import { fileURLToPath } from 'node:url'
 import { describe, expect, it } from 'vitest'
 import { PROBLEMS } from '#shared/contract/problems'
 import { MEASURES } from '#shared/decision/report'
@@ -5,7 +6,7 @@ import { ANALYSIS_VERDICTS, PREREQUISITE_VERDICTS, REASONS } from '#shared/plan/
 import { catalogue } from '#shared/wording/catalogue'
 import { wordingUses } from '../../../helpers/wordingUses'
 
-const root = new URL('../../../../', import.meta.url).pathname
+const root = fileURLToPath(new URL('../../../../', import.meta.url))
 const uses = wordingUses(['app', 'server', 'shared'].map(folder => `${root}${folder}`))
 
 const at = (key: string): unknown => key.split('.').reduce<unknown>((node, part) =>
