@@ -1,6 +1,7 @@
 import { mkdtempSync, rmSync, writeFileSync } from 'node:fs'
 import { readFile } from 'node:fs/promises'
 import { tmpdir } from 'node:os'
+import { fileURLToPath } from 'node:url'
 import { join } from 'node:path'
 import { afterAll, describe, expect, it } from 'vitest'
 import type { SeenReport } from '#shared/decision/report'
@@ -11,7 +12,7 @@ import { insectPlan, plantPlan, sleepPlan } from '../../../reference/openPlans'
 const folder = mkdtempSync(join(tmpdir(), 'check-'))
 afterAll(() => rmSync(folder, { recursive: true }))
 
-const data = (name: string) => new URL(`../../../reference/data/${name}`, import.meta.url).pathname
+const data = (name: string) => fileURLToPath(new URL(`../../../reference/data/${name}`, import.meta.url))
 
 function file(name: string, content: string): string {
   const path = join(folder, name)

@@ -4,7 +4,8 @@ import { canonicalBytes, canonicalText, NotCanonicalError, sha256 } from '#share
 describe('canonical form', () => {
   // RFC 8785, section 3.2.2: the sample input and its canonical output.
   it('reproduces the sample of RFC 8785', () => {
-    const input = { numbers: [333333333.33333329, 1E30, 4.50, 2e-3, 0.000000000000000000000000001], string: '€$\u000F\u000aA\'B"\\\\"/', literals: [null, true, false] }
+    const numbers = JSON.parse('[333333333.33333329, 1E30, 4.50, 2e-3, 0.000000000000000000000000001]') as number[]
+    const input = { numbers, string: '€$\u000F\u000aA\'B"\\\\"/', literals: [null, true, false] }
     expect(canonicalText(input)).toBe('{"literals":[null,true,false],"numbers":[333333333.3333333,1e+30,4.5,0.002,1e-27],"string":"€$\\u000f\\nA\'B\\"\\\\\\\\\\"/"}')
   })
 
