@@ -1,5 +1,5 @@
 import type { Reason } from '../plan/terms'
-import { type Decision, encodeDecision, MET, NOT_ASSESSABLE, NOT_MET, outcomeReason, outcomeVerdict, UNJUDGED } from './codes'
+import { type Decision, encodeDecision, MET, NOT_ASSESSABLE, NOT_MET, NOT_REACHED, outcomeReason, outcomeVerdict, UNJUDGED } from './codes'
 import type { CompiledRule, RuleSample, Workspace } from './rule'
 import { checkAt, judgeCheck, judgeSwitches, walk } from './walk'
 
@@ -14,7 +14,7 @@ const notAssessable = (reason: Reason, step: number | null = null): Decision => 
 
 function reset(workspace: Workspace): void {
   workspace.outcomes.fill(UNJUDGED)
-  workspace.stepOutcomes.fill(0)
+  workspace.stepOutcomes.fill(NOT_REACHED)
   workspace.stepReasons.fill(0)
   workspace.touchedArms = false
   for (const view of workspace.views) view.ready = false

@@ -67,4 +67,3 @@ export type Plan = z.infer<typeof planSchema>
 export type Arm = Plan['arms'][number]
 export type Endpoint = Plan['endpoints'][number]
 export type Look = Plan['looks'][number]
-export type Screen = Plan['screens'][number]

@@ -132,6 +132,7 @@ describe('the main path with six accounts', () => {
     await page.getByRole('button', { name: 'Settle under signature' }).click()
     await sign(page, cast.as.reviewer, 'The registered step was foreseen for unequal spread.')
     await open(page, study('/memos'))
+    await page.getByRole('link', { name: 'Memo 1' }).click()
     await page.getByRole('button', { name: 'Sign memo' }).click()
     await sign(page, cast.as.reviewer)
     await page.getByText(/being made|issued/).first().waitFor()
