@@ -8,7 +8,7 @@ import { standardNormal } from '#shared/statistics/random/variates'
 import { asSwitch, missing, normality, perArm, plainAnalysis, plainPlan, spread } from './plainPlan'
 
 const strict = { tooFewData: null, procedureUndefined: null }
-const withinArms: Requirement = {
+const withinArms: typeof normality = {
   id: 'within', kind: 'normality', quantity: 'values-within-arms',
   limits: { size: null, significance: { procedure: 'anderson-darling', level: 0.05 }, broken: 'either' },
   minimum: 8, multiplicity: 'holm', otherReading: strict,
@@ -18,7 +18,7 @@ const residuals: Requirement = {
   limits: { size: { measure: 'skewness', limit: 0.5, reading: 'upper-limit' }, significance: null, broken: 'either' },
   minimum: 20, multiplicity: 'none', otherReading: strict,
 }
-const differences: Requirement = { ...normality, id: 'differences', quantity: 'differences', minimum: 10 } as Requirement
+const differences: Requirement = { ...normality, id: 'differences', quantity: 'differences', minimum: 10 }
 const symmetry: Requirement = { id: 'symmetry', kind: 'symmetry', quantity: 'differences', limits: { size: { measure: 'skewness', limit: 0.5, reading: 'lower-limit' } }, minimum: 10, otherReading: strict }
 
 const ratio: PlannedAnalysis = {

@@ -4,20 +4,22 @@ import type { Plan } from '#shared/plan/schema'
 
 const strict = { tooFewData: null, procedureUndefined: null }
 
-export const normality: Requirement = {
+type Of<Kind> = Extract<Requirement, { kind: Kind }>
+
+export const normality: Of<'normality'> = {
   id: 'normality', kind: 'normality', quantity: 'residuals-by-own-sd',
   limits: { size: { measure: 'skewness', limit: 1, reading: 'by-n' }, significance: { procedure: 'shapiro-wilk', level: 0.05 }, broken: 'both' },
   minimum: 8, multiplicity: 'none', otherReading: strict,
 }
 
-export const spread: Requirement = {
+export const spread: Of<'equal-spread'> = {
   id: 'spread', kind: 'equal-spread', quantity: 'values-within-arms',
   limits: { size: { measure: 'sd-ratio', limit: 1.5, reading: 'estimate' }, significance: { procedure: 'brown-forsythe', level: 0.05 }, broken: 'either' },
   minimum: 5, otherReading: strict,
 }
 
-export const missing: Prerequisite = { id: 'missing', kind: 'missing-values', scope: 'all-arms', most: 0.2, onFailure: 'hold' }
-export const perArm: Requirement = { id: 'per-arm', kind: 'count', scope: 'per-arm', least: { kind: 'number', n: 5 } }
+export const missing: Extract<Prerequisite, { kind: 'missing-values' }> = { id: 'missing', kind: 'missing-values', scope: 'all-arms', most: 0.2, onFailure: 'hold' }
+export const perArm: Of<'count'> = { id: 'per-arm', kind: 'count', scope: 'per-arm', least: { kind: 'number', n: 5 } }
 
 export const asSwitch = (requirement: Requirement): Prerequisite => ({ ...requirement, onFailure: 'switch' })
 

@@ -30,7 +30,7 @@ const VISITS = ['V1', 'V2', 'V3']
 class Draw {
   constructor(readonly g: fc.GeneratorValue) {}
   one<T>(...list: readonly T[]): T {
-    return this.g(fc.constantFrom<T>, ...list)
+    return list[this.int(0, list.length - 1)]!
   }
 
   int(min: number, max: number): number {

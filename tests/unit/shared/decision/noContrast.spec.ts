@@ -1,7 +1,6 @@
 import { readdirSync, readFileSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
 import { join } from 'node:path'
-import { fileURLToPath } from 'node:url'
 import { describe, expect, it } from 'vitest'
 import type { Requirement } from '#shared/plan/prerequisiteSchema'
 import type { Plan } from '#shared/plan/schema'
