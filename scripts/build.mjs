@@ -1,8 +1,8 @@
 // @ts-check
-import { existsSync, readFileSync, writeFileSync } from 'node:fs'
+import { existsSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
 import { join } from 'node:path'
 import { contentHash } from './content-hash.mjs'
-import { alone } from './locks.mjs'
+import { tool, whilePreparing } from './dependencies.mjs'
 import { runQuietly } from './processes.mjs'
 import { say } from './say.mjs'
 
@@ -11,18 +11,19 @@ const SOURCES = ['app', 'server', 'shared', 'public', 'drizzle', 'scripts/build'
 const MARK = '.output/.stipule-build'
 
 /**
- * Builds the programs when they are not those of the sources; two commands at a time build one after the other.
+ * Builds the programs when they are not those of the sources.
  *
- * @param {{ root: string, logDir: string, lockFile: string, signal: AbortSignal }} place
+ * @param {import('./dependencies.mjs').Checkout} checkout
  */
-export async function requireBuild({ root, logDir, lockFile, signal }) {
-  await alone(lockFile, signal, async () => {
+export function requireBuild({ root, signal }) {
+  return whilePreparing({ root, signal }, async () => {
     const hash = contentHash(root, { contents: SOURCES })
     const mark = join(root, MARK)
     if (existsSync(mark) && readFileSync(mark, 'utf8') === hash) return
     say('Building. This takes one or two minutes.')
+    rmSync(mark, { force: true })
     await runQuietly({
-      what: 'The build', command: 'npx', args: ['nuxt', 'build'], cwd: root, signal, log: join(logDir, 'build.log'),
+      what: 'The build', command: tool(root, 'nuxt'), args: ['build'], cwd: root, signal, log: join(root, '.data/logs/build.log'),
       env: { ...process.env, NUXT_TELEMETRY_DISABLED: '1', NODE_ENV: 'production' },
     })
     writeFileSync(mark, hash)

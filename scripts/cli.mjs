@@ -1,26 +1,27 @@
 // @ts-check
-import { join, resolve } from 'node:path'
+import { join } from 'node:path'
 import { fileURLToPath } from 'node:url'
 import { requireBuild } from './build.mjs'
-import { requireDependencies } from './dependencies.mjs'
+import { requireDependencies, requireNode } from './dependencies.mjs'
 import { run } from './processes.mjs'
 import { main, Refusal } from './say.mjs'
-import { makeDataDir } from './secrets.mjs'
 
 /** Command-line entries of the build. */
 const ENTRIES = ['check']
 
-const root = fileURLToPath(new URL('..', import.meta.url)).replace(/\/$/, '')
-const dataDir = resolve(process.env.STIPULE_DATA_DIR || join(root, '.data'))
+const root = fileURLToPath(new URL('..', import.meta.url))
 const [entry = '', ...args] = process.argv.slice(2)
 
-/** Prepares what is missing, says so on standard error alone, and hands over: paths stay relative to the caller. */
+/** Where the person stands; npm runs scripts in the folder of package.json. */
+const caller = process.env.npm_lifecycle_event === entry ? process.env.INIT_CWD : undefined
+
+/** Prepares what is missing, says so on standard error alone, and hands over. */
 await main(async (signal) => {
   if (!ENTRIES.includes(entry)) throw new Refusal(`There is no command "${entry}". There are: ${ENTRIES.join(', ')}.`)
-  makeDataDir(dataDir)
-  const logDir = join(dataDir, 'logs')
-  await requireDependencies({ root, logDir, signal })
-  await requireBuild({ root, logDir, lockFile: join(dataDir, 'build.lock'), signal })
-  const { code } = await run({ command: process.execPath, args: [join(root, '.output/server', `${entry}.mjs`), ...args], cwd: process.env.INIT_CWD ?? process.cwd(), output: 'terminal', signal })
+  requireNode()
+  await requireDependencies({ root, signal })
+  await requireBuild({ root, signal })
+  const program = join(root, '.output/server', `${entry}.mjs`)
+  const { code } = await run({ command: process.execPath, args: [program, ...args], cwd: caller ?? process.cwd(), output: 'terminal', signal })
   return code
 })

@@ -1,9 +1,19 @@
 // @ts-check
-import { existsSync, readFileSync } from 'node:fs'
 
 /**
  * @typedef {{ passed: number, failed: number, skipped: number }} Count
+ * @typedef {{ name: string, seconds: number, count: Count }} Done a stage that has been run.
+ * @typedef {object} VitestReport as much of vitest's JSON report as is read.
+ * @property {number} numPassedTests
+ * @property {number} numFailedTests
+ * @property {number} numPendingTests
+ * @property {number} [numTodoTests]
+ * @property {readonly { status: string, assertionResults: readonly { status: string }[] }[]} testResults by file.
  */
+
+/** A check that is no collection of tests counts as one. */
+export const ONE_PASSED = { passed: 1, failed: 0, skipped: 0 }
+export const ONE_FAILED = { passed: 0, failed: 1, skipped: 0 }
 
 /** @param {readonly Count[]} counts @returns {Count} */
 export const total = counts => counts.reduce((sum, { passed, failed, skipped }) => ({
@@ -14,30 +24,28 @@ export const total = counts => counts.reduce((sum, { passed, failed, skipped }) 
 export const closingLine = ({ passed, failed, skipped }) => `${passed} passed, ${failed} failed${skipped > 0 ? `, ${skipped} skipped` : ''}`
 
 /**
- * Reads vitest's JSON report. A file that could not be loaded counts as one failure, as does a run without any
- * test: neither may pass for success.
+ * Counts a run of vitest. A file that fails as a whole counts as one failure, as does a run that ends badly, that
+ * leaves no report or in which no test was run: none of these may pass for success.
  *
- * @param {string} file
+ * @param {VitestReport | null} report
  * @param {number} exitCode
  * @returns {Count}
  */
-export function vitestCount(file, exitCode) {
-  if (!existsSync(file)) return { passed: 0, failed: 1, skipped: 0 }
-  const report = JSON.parse(readFileSync(file, 'utf8'))
-  const skipped = report.numPendingTests + (report.numTodoTests ?? 0)
-  const unloaded = report.testResults.filter((/** @type {{ status: string, assertionResults: unknown[] }} */ { status, assertionResults }) => status === 'failed' && assertionResults.length === 0).length
-  const failed = report.numFailedTests + unloaded
-  const silent = report.numPassedTests + failed === 0 || (exitCode !== 0 && failed === 0)
-  return { passed: report.numPassedTests, failed: failed + (silent ? 1 : 0), skipped }
+export function countVitest(report, exitCode) {
+  if (!report) return ONE_FAILED
+  const brokenFiles = report.testResults.filter(({ status, assertionResults }) =>
+    status === 'failed' && !assertionResults.some(({ status }) => status === 'failed')).length
+  const failed = report.numFailedTests + brokenFiles
+  const bad = failed === 0 && (exitCode !== 0 || report.numPassedTests === 0)
+  return { passed: report.numPassedTests, failed: failed + Number(bad), skipped: report.numPendingTests + (report.numTodoTests ?? 0) }
 }
 
 /**
- * The last closing line of a run's output, read back.
+ * One line per stage, in columns.
  *
- * @param {string} text
- * @returns {Count | null}
+ * @param {readonly Done[]} stages
  */
-export function readClosingLine(text) {
-  const [found] = [...text.matchAll(/^(\d+) passed, (\d+) failed(?:, (\d+) skipped)?$/gm)].slice(-1)
-  return found ? { passed: Number(found[1]), failed: Number(found[2]), skipped: Number(found[3] ?? 0) } : null
+export function table(stages) {
+  const width = Math.max(...stages.map(({ name }) => name.length))
+  return stages.map(({ name, seconds, count }) => `${name.padEnd(width)}  ${seconds.toFixed(1).padStart(7)} s  ${closingLine(count)}`).join('\n')
 }

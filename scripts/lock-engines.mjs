@@ -1,60 +1,70 @@
 // @ts-check
 
-/**
- * Whether a range of `engines.node` allows a version. Understands what packages write: alternatives by `||`,
- * comparisons joined by blanks, caret, tilde, wildcards, hyphen ranges.
- *
- * @param {string} range
- * @param {readonly [number, number, number]} version
- */
-export function allows(range, version) {
-  return range.split('||').some(alternative => comparators(alternative.trim()).every(({ operator, bound, parts }) => holds(operator, compare(version, bound), version, bound, parts)))
-}
+/** @typedef {readonly [major: number, minor: number, patch: number]} Version */
 
-/** @param {string} text */
-function comparators(text) {
-  const hyphen = /^v?([\d.]+)\s+-\s+v?([\d.]+)$/.exec(text)
-  const joined = hyphen ? `>=${hyphen[1]} <=${hyphen[2]}` : text.replace(/([<>=^~]+)\s+/g, '$1')
-  return joined.split(/\s+/).filter(part => part !== '' && part !== '*' && part !== 'x').map((part) => {
+/**
+ * One comparison of a range; `given` tells how many numbers of the bound were written (`20.x` has one).
+ *
+ * @typedef {{ operator: string, bound: Version, given: number }} Comparison
+ */
+
+/**
+ * Reads what packages write into `engines`: comparisons joined by blanks, caret, tilde, wildcards, hyphen ranges.
+ *
+ * @param {string} text one alternative of a range.
+ * @returns {Comparison[]}
+ */
+function comparisons(text) {
+  const joined = text.trim().replace(/^(\S+)\s+-\s+(\S+)$/, '>=$1 <=$2').replace(/([<>=^~])\s+/g, '$1')
+  return joined.split(/\s+/).filter(part => part !== '').map((part) => {
     const [, operator = '', numbers = ''] = /^([<>=^~]*)v?(.*)$/.exec(part) ?? []
-    const given = numbers.split('-')[0]?.split('.').filter(number => /^\d+$/.test(number)).map(Number) ?? []
-    return { operator, parts: given.length, bound: /** @type {[number, number, number]} */ ([given[0] ?? 0, given[1] ?? 0, given[2] ?? 0]) }
+    const written = /^[\d.]*/.exec(numbers)?.[0].split('.').filter(number => number !== '').map(Number) ?? []
+    return { operator, bound: [written[0] ?? 0, written[1] ?? 0, written[2] ?? 0], given: written.length }
   })
 }
 
-/** @param {readonly number[]} one @param {readonly number[]} other */
-function compare(one, other) {
-  for (let i = 0; i < 3; i++) if (one[i] !== other[i]) return (one[i] ?? 0) - (other[i] ?? 0)
-  return 0
+/** @param {Version} one @param {Version} other @returns {number} negative, zero or positive. */
+const compare = (one, other) => one[0] - other[0] || one[1] - other[1] || one[2] - other[2]
+
+/**
+ * @param {Version} version
+ * @param {Comparison} comparison
+ */
+function fulfils(version, { operator, bound, given }) {
+  const order = compare(version, bound)
+  /** @param {number} places */
+  const agree = places => version.slice(0, places).every((number, place) => number === bound[place])
+  switch (operator) {
+    case '>=': return order >= 0
+    case '>': return order > 0 && !agree(given)
+    case '<=': return order <= 0 || agree(given)
+    case '<': return order < 0
+    case '^': return order >= 0 && agree(bound[0] > 0 ? 1 : Math.min(given, bound[1] > 0 ? 2 : 3))
+    case '~': return order >= 0 && agree(Math.min(given, 2))
+    default: return agree(given)
+  }
 }
 
 /**
- * @param {string} operator @param {number} order
- * @param {readonly number[]} version @param {readonly number[]} bound @param {number} parts
+ * Whether a range of `engines.node` allows a version.
+ *
+ * @param {string} range
+ * @param {Version} version
  */
-function holds(operator, order, version, bound, parts) {
-  const same = (/** @type {number} */ places) => bound.slice(0, places).every((number, i) => version[i] === number)
-  switch (operator) {
-    case '>=': return order >= 0
-    case '>': return parts < 3 ? order > 0 && !same(parts) : order > 0
-    case '<=': return order <= 0 || same(parts)
-    case '<': return order < 0
-    case '^': return order >= 0 && version[0] === bound[0]
-    case '~': return order >= 0 && same(Math.min(parts, 2))
-    default: return same(parts)
-  }
+export function allows(range, version) {
+  return range.split('||').some(alternative => comparisons(alternative).every(comparison => fulfils(version, comparison)))
 }
 
 /**
  * What the lock file must not have: packages that refuse the least Node.js we promise, and download addresses.
  *
- * @param {{ packages?: Record<string, { engines?: { node?: string }, resolved?: string, optional?: boolean }> }} lock
- * @param {readonly [number, number, number]} least
- * @returns {string[]}
+ * @param {{ packages: Record<string, { engines?: { node?: string }, resolved?: string }> }} lock
+ * @param {Version} least
+ * @returns {string[]} one sentence per fault.
  */
-export function lockFaults({ packages = {} }, least) {
-  return Object.entries(packages).flatMap(([path, { engines, resolved }]) => [
-    ...engines?.node && !allows(engines.node, least) ? [`${path} wants Node.js ${engines.node}`] : [],
-    ...resolved?.startsWith('http') ? [`${path} names a download address`] : [],
+export function lockFaults({ packages }, least) {
+  return Object.entries(packages).flatMap(([folder, { engines, resolved }]) => [
+    ...engines?.node && !allows(engines.node, least) ? [`${folder} wants Node.js ${engines.node}.`] : [],
+    ...resolved === undefined ? [] : [`${folder} has a field "resolved".`],
   ])
 }

@@ -4,8 +4,6 @@ import { runQuietly } from './processes.mjs'
 import { Refusal, say } from './say.mjs'
 
 export const CHROMIUM = '/usr/bin/chromium'
-export const RSCRIPT = '/usr/bin/Rscript'
-export const PYTHON = '/usr/bin/python3'
 const POSTGRESQL = '/usr/lib/postgresql'
 
 /** Debian's settings for the cluster that it makes when PostgreSQL is installed; we make one of our own. */
@@ -37,11 +35,11 @@ const PACKAGES = [
   { name: 'chromium', purpose: 'test', present: allExist(CHROMIUM) },
   { name: 'poppler-utils', purpose: 'test', present: allExist('/usr/bin/pdfsig', '/usr/bin/pdftotext', '/usr/bin/pdfdetach', '/usr/bin/pdffonts') },
   { name: 'openssl', purpose: 'test', present: allExist('/usr/bin/openssl') },
-  { name: 'r-base-core', purpose: 'long', present: allExist(RSCRIPT) },
+  { name: 'r-base-core', purpose: 'long', present: allExist('/usr/bin/Rscript') },
   { name: 'r-cran-nortest', purpose: 'long', present: inLibraryOfR('nortest') },
   { name: 'r-cran-car', purpose: 'long', present: inLibraryOfR('car') },
   { name: 'r-cran-jsonlite', purpose: 'long', present: inLibraryOfR('jsonlite') },
-  { name: 'python3-scipy', purpose: 'long', present: allExist(PYTHON, '/usr/lib/python3/dist-packages/scipy/__init__.py') },
+  { name: 'python3-mpmath', purpose: 'long', present: allExist('/usr/bin/python3', '/usr/lib/python3/dist-packages/mpmath/__init__.py') },
 ]
 
 /**

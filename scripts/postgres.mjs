@@ -58,7 +58,7 @@ async function startLocked(place, { logDir, durable, signal, release }) {
   if (!state.complete) await initialise(place, binaries, join(logDir, 'initdb.log'), signal)
   const port = await choosePort(place)
   const service = startService({
-    name: 'PostgreSQL', command: join(binaries, 'postgres'), args: serverArguments(data, port, durable),
+    name: 'database server', command: join(binaries, 'postgres'), args: serverArguments(data, port, durable),
     cwd: '/', env: plainEnvironment(), account, log: join(logDir, 'postgres.log'), stopBy: 'SIGINT', patience: 60,
   })
   /** @param {string} role @param {string} database */

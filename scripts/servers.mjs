@@ -1,105 +1,142 @@
 // @ts-check
+import { readFileSync } from 'node:fs'
 import { join } from 'node:path'
-import { setTimeout as pause } from 'node:timers/promises'
+import { setTimeout as delay } from 'node:timers/promises'
 import { freePort } from './ports.mjs'
 import { runQuietly, startService, tailOf } from './processes.mjs'
 import { Refusal } from './say.mjs'
 
 const READY_WITHIN = 60_000
 const MAIL_FROM = 'Stipule <stipule@localhost.example>'
+const KEEP_WITH_PARENT = new URL('./keep-with-parent.mjs', import.meta.url).href
+
+/** @typedef {import('./processes.mjs').Service} Service */
 
 /**
- * @typedef {object} Settings
+ * @typedef {object} Installation one database with the programs that serve it.
  * @property {string} root
  * @property {string} dataDir
  * @property {string} logDir
  * @property {number} port
+ * @property {number | null} smtpPort port for the local mail server; null: the environment names another one.
+ * @property {boolean} demo whether the demo may be made and pages are marked.
  * @property {string} databaseUrl
  * @property {string} migrationUrl
- * @property {boolean} demo whether the demo may be made and pages are marked.
- * @property {string} [smtpUrl] a mail server of one's own; otherwise the local one is started.
  * @property {AbortSignal} signal
  */
 
-/** @param {Settings} settings @param {string} name */
+/** @param {Installation} installation @param {string} name */
 const program = ({ root }, name) => join(root, '.output/server', name)
 
+/** @param {{ port: number }} installation */
+export const urlOf = ({ port }) => `http://127.0.0.1:${port}`
+
 /**
- * The environment of every program of one installation.
+ * What every program of an installation is told.
  *
- * @param {Settings} settings
- * @param {string} smtpUrl
+ * @param {Installation} installation
+ * @returns {Record<string, string>}
  */
-const environment = ({ dataDir, port, databaseUrl, demo }, smtpUrl) => {
-  const origin = `http://127.0.0.1:${port}`
+export function environmentOf(installation) {
+  const { dataDir, databaseUrl, demo, smtpPort } = installation
+  const origin = process.env.STIPULE_ORIGIN || urlOf(installation)
   return {
-    STIPULE_ORIGIN: origin, AUTH_ORIGIN: `${origin}/api/auth`, STIPULE_MAIL_FROM: MAIL_FROM,
-    ...process.env,
-    NODE_ENV: 'production', DATABASE_URL: databaseUrl, STIPULE_DATA_DIR: dataDir, STIPULE_SMTP_URL: smtpUrl, STIPULE_DEMO: String(demo),
-    HOST: '127.0.0.1', PORT: String(port), NITRO_HOST: '127.0.0.1', NITRO_PORT: String(port),
+    DATABASE_URL: databaseUrl, STIPULE_DATA_DIR: dataDir, STIPULE_DEMO: String(demo),
+    STIPULE_ORIGIN: origin, AUTH_ORIGIN: `${origin}/api/auth`,
+    STIPULE_MAIL_FROM: process.env.STIPULE_MAIL_FROM || MAIL_FROM,
+    STIPULE_SMTP_URL: smtpPort === null ? process.env.STIPULE_SMTP_URL ?? '' : `smtp://127.0.0.1:${smtpPort}`,
   }
 }
+
+/**
+ * Runs a program of the build to its end; a failure is shown with the end of its log.
+ *
+ * @param {Installation} installation
+ * @param {{ what: string, file: string, more?: Record<string, string> }} work
+ * @returns {Promise<string>} what it has written.
+ */
+async function runProgram(installation, { what, file, more = {} }) {
+  const log = join(installation.logDir, file.replace('.mjs', '.log'))
+  const env = { ...process.env, NODE_ENV: 'production', ...environmentOf(installation), ...more }
+  await runQuietly({ what, command: process.execPath, args: [program(installation, file)], env, log, signal: installation.signal })
+  return readFileSync(log, 'utf8')
+}
+
+/**
+ * Brings an installation's database to this version.
+ *
+ * @param {Installation} installation
+ */
+export const migrate = installation => runProgram(installation, {
+  what: 'The migration', file: 'migrate.mjs', more: { MIGRATION_DATABASE_URL: installation.migrationUrl },
+})
+
+/**
+ * Makes the demo on an empty database.
+ *
+ * @param {Installation} installation
+ */
+export const seed = installation => runProgram(installation, { what: 'Making the demo', file: 'seed.mjs' })
 
 /**
  * Waits until the server answers that it is ready.
  *
  * @param {string} url
- * @param {readonly import('./processes.mjs').Service[]} services
+ * @param {readonly Service[]} services
  * @param {AbortSignal} signal
  */
-async function untilReady(url, services, signal) {
-  /** @type {{ name: string, code: number, log: string } | null} */
+async function waitUntilReady(url, services, signal) {
+  /** @type {Awaited<Service['ended']> | null} */
   let dead = null
   for (const { ended } of services) void ended.then(end => dead = end)
   const deadline = Date.now() + READY_WITHIN
   while (Date.now() < deadline) {
-    signal.throwIfAborted()
     if (dead) throw endedEarly(dead)
     const answer = await fetch(`${url}/api/health`, { signal: AbortSignal.timeout(2000) }).catch(() => null)
     if (answer?.ok) return
-    await pause(200)
+    await delay(200, undefined, { signal }).catch(() => signal.throwIfAborted())
   }
-  throw new Refusal(`The server did not become ready within ${READY_WITHIN / 1000} seconds.`)
+  throw new Refusal(`The server did not become ready within ${READY_WITHIN / 1000} seconds. The end of its log:\n${tailOf(services.at(-1)?.log ?? '')}`)
 }
 
-/** @param {{ name: string, code: number, log: string }} end */
+/** @param {Awaited<Service['ended']>} end */
 export const endedEarly = ({ name, code, log }) => new Refusal(`The ${name} has ended with exit code ${code}. The end of ${log}:\n${tailOf(log)}`)
 
 /**
- * Migrates, makes the demo where it is wanted, and starts web server, worker and, without a mail server of one's
- * own, the local one.
+ * Starts worker and web server on a migrated database, and the local mail server where none is named; answers
+ * when they serve.
  *
- * @param {Settings} settings
- * @returns {Promise<{ url: string, migrated: string, services: import('./processes.mjs').Service[], stop: () => Promise<void> }>}
+ * @param {Installation} installation
+ * @returns {Promise<{ url: string, ended: Service['ended'], stop: () => Promise<void> }>} `ended` tells of the
+ *   first one that ends.
  */
-export async function startServers(settings) {
-  const { logDir, migrationUrl, port, signal } = settings
-  const smtpPort = settings.smtpUrl ? null : await freePort()
-  const env = environment(settings, settings.smtpUrl ?? `smtp://127.0.0.1:${smtpPort}`)
-  const node = process.execPath
-  const migration = join(logDir, 'migrate.log')
-  await runQuietly({ what: 'The migration', command: node, args: [program(settings, 'migrate.mjs')], env: { ...env, MIGRATION_DATABASE_URL: migrationUrl }, log: migration, signal })
-  if (settings.demo) await runQuietly({ what: 'The demo', command: node, args: [program(settings, 'seed.mjs')], env, log: join(logDir, 'seed.log'), signal })
-  const preload = ['--import', new URL('./keep-with-parent.mjs', import.meta.url).href]
-  /** @param {string} name @param {string} file @param {NodeJS.ProcessEnv} [more] */
-  const start = (name, file, more = {}) => startService({
-    name, command: node, args: [...preload, program(settings, file)], env: { ...env, ...more }, log: join(logDir, `${name.replaceAll(' ', '-')}.log`), channel: true,
-  })
-  const services = [
-    ...smtpPort === null ? [] : [start('mail server', 'mail-sink.mjs', { STIPULE_SMTP_PORT: String(smtpPort) })],
-    start('worker', 'worker.mjs'),
-    start('web server', 'index.mjs'),
-  ]
-  const stop = async () => {
-    await Promise.all(services.map(service => service.stop()))
+export async function startServers(installation) {
+  const { logDir, port, signal, smtpPort } = installation
+  const env = {
+    ...process.env, NODE_ENV: 'production', ...environmentOf(installation),
+    HOST: '127.0.0.1', PORT: String(port), NITRO_HOST: '127.0.0.1', NITRO_PORT: String(port), STIPULE_SMTP_PORT: String(smtpPort ?? ''),
   }
-  const url = `http://127.0.0.1:${port}`
+  /** @param {string} name @param {string} file */
+  const start = (name, file) => startService({
+    name, command: process.execPath, args: ['--import', KEEP_WITH_PARENT, program(installation, file)], env,
+    log: join(logDir, file.replace('.mjs', '.log').replace('index', 'web')), channel: true,
+  })
+  const mail = smtpPort === null ? [] : [start('mail server', 'mail-sink.mjs')]
+  const serving = [start('worker', 'worker.mjs'), start('web server', 'index.mjs')]
+  /** Mails are taken until the last sender has ended. */
+  const stop = async () => {
+    for (const services of [serving, mail]) await Promise.all(services.map(service => service.stop()))
+  }
+  const services = [...mail, ...serving]
   try {
-    await untilReady(url, services, signal)
+    await waitUntilReady(urlOf(installation), services, signal)
   }
   catch (error) {
     await stop()
     throw error
   }
-  return { url, migrated: migration, services, stop }
+  return { url: urlOf(installation), ended: Promise.race(services.map(({ ended }) => ended)), stop }
 }
+
+/** A port for the local mail server, unless the environment names another server. */
+export const chooseSmtpPort = async () => process.env.STIPULE_SMTP_URL ? null : freePort()

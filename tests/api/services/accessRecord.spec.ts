@@ -110,7 +110,7 @@ describe('exposure', () => {
     const entries = (await lastEntries({ studyId }, 9)).filter(({ action }) => action === 'exposure.began')
     expect(entries.map(({ detail }) => detail)).toEqual([{ how: 'allocation', through: 'list-1' }, { how: 'arm-level-view', through: 'extract-1' }])
 
-    const [{ id: clearanceId }] = (await listClearances(database.db, { studyId })).clearances as [{ id: Parameters<typeof endClearance>[1]['clearanceId'] }]
+    const clearanceId = (await listClearances(database.db, { studyId })).clearances[0]!.id
     await endClearance(database.db, { studyId, clearanceId, reason, viewer: administrator })
     expect((await as('cleared')).standing).toMatchObject({ cleared: false, exposed: true, blindHolds: true })
 
