@@ -45,6 +45,7 @@ export async function signIn(browser: Browser, account: Account, options: { widt
     viewport: { width: options.width ?? 1360, height: 1000 }, colorScheme: options.dark ? 'dark' : 'light', acceptDownloads: true,
   })
   const page = await context.newPage()
+  page.setDefaultTimeout(15_000)
   const received: Person['received'] = []
   const faults: string[] = []
   watch(page, received, faults)

@@ -4,6 +4,7 @@ import { tmpdir } from 'node:os'
 import { join } from 'node:path'
 import type { Browser } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, it } from 'vitest'
+import { readStudyOperation } from '#shared/contract/studies'
 import { LARKMOOR_CUTS, larkmoorFiles } from '../../server/demo/larkmoorData'
 import { larkmoorPlan } from '../../server/demo/larkmoorPlan'
 import { seededSource } from '../../server/demo/source'
@@ -20,11 +21,14 @@ const lock = LARKMOOR_CUTS[2]
 
 let browser: Browser
 let cast: Cast
+let protocolNumber: string
 const people = new Map<Role, Person>()
 
 beforeAll(async () => {
   browser = await launch()
   cast = await makeStudyWithRoles()
+  const study = await cast.as.biostatistician.client.call(readStudyOperation, { params: { studyId: cast.studyId } })
+  protocolNumber = study.protocolNumber
 })
 
 afterAll(async () => {
@@ -48,7 +52,8 @@ describe('the main path with six accounts', () => {
     const { page } = await as('biostatistician')
     await open(page, study('/plan'))
     await page.getByRole('button', { name: 'Start a draft' }).click()
-    const plan = larkmoorPlan(cast.as.investigator.email)
+    const invented = larkmoorPlan(cast.as.investigator.email)
+    const plan = { ...invented, protocol: { ...invented.protocol, number: protocolNumber } }
     await page.getByLabel('Read a plan file').setInputFiles({ name: 'plan.json', mimeType: 'application/json', buffer: Buffer.from(JSON.stringify(plan)) })
     await page.getByText('Nothing is missing.').waitFor()
     await page.getByRole('button', { name: 'Save draft' }).click()
@@ -149,7 +154,7 @@ describe('the main path with six accounts', () => {
     const verdict = execFileSync('pdfsig', [path], { encoding: 'utf8' })
     expect(verdict).toContain('Signature is Valid')
     expect(verdict).toContain('Total document signed')
-    expect(execFileSync('pdftotext', [path, '-'], { encoding: 'utf8' })).toContain('LARKMOOR-204')
+    expect(execFileSync('pdftotext', [path, '-'], { encoding: 'utf8' })).toContain(protocolNumber)
   })
 
   it('let nothing about arms reach those who are not cleared, and nothing leave the application', () => {
