@@ -28,6 +28,18 @@ function forgetSettings() {
   }
 }
 
+/**
+ * What Debian packages are needed for.
+ *
+ * @param {Stages} stages
+ * @returns {import('./packages.mjs').Purpose[]}
+ */
+const purposes = stages => [
+  ...stages.wants(...SERVED) ? /** @type {const} */ (['start']) : [],
+  ...stages.wants('unit', ...SERVED) ? /** @type {const} */ (['test']) : [],
+  ...stages.wants('regeneration') ? /** @type {const} */ (['long']) : [],
+]
+
 /** @param {Stages} stages @param {Setting} setting */
 async function runUnserved(stages, setting) {
   await stages.run('lock', () => lockCheck(setting))
@@ -84,7 +96,7 @@ await main(async (signal) => {
   const chosen = chosenStages(args, isLong ? LONG : QUICK, [...QUICK, ...LONG])
   const stages = new Stages(chosen, signal)
   makeDataDir(join(root, '.data'))
-  await requirePackages(['start', 'test', ...stages.wants('regeneration') ? /** @type {const} */ (['long']) : []], join(logDir, 'packages.log'))
+  await requirePackages(purposes(stages), join(logDir, 'packages.log'))
   await requireDependencies({ root, signal })
   const setting = { root, logDir, signal }
   await runUnserved(stages, setting)
