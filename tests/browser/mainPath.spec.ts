@@ -86,19 +86,18 @@ describe('the main path with six accounts', () => {
   })
 
   it('locks the database, then releases what the others will see', async () => {
-    const { page } = await as('dataManager')
+    const { page: blinded } = await as('biostatistician')
     await expect.poll(async () => {
-      await open(page, study('/settings'))
-      return page.getByLabel('Extract').locator('option').count()
-    }, { timeout: 60_000, interval: 1500 }).toBeGreaterThan(1)
+      await open(blinded, study('/ledger'))
+      return blinded.getByRole('cell').getByText('held behind the blind').count()
+    }, { timeout: 60_000, interval: 1500 }).toBe(4)
+
+    const { page } = await as('dataManager')
+    await open(page, study('/settings'))
     await page.getByLabel('Extract').selectOption({ index: 1 })
     await page.getByRole('button', { name: 'Lock database' }).click()
     await sign(page, cast.as.dataManager)
     await page.getByText('Database locked').first().waitFor()
-
-    const { page: blinded } = await as('biostatistician')
-    await open(blinded, study('/ledger'))
-    expect(await blinded.getByRole('cell').getByText('held behind the blind').count()).toBe(4)
 
     const cleared = (await as('cleared')).page
     await open(cleared, study('/ledger'))
