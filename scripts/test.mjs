@@ -74,7 +74,7 @@ async function runServed(stages, setting) {
   if (!installation) return failAll(stages, 'There is no server to test.')
   const { env, startDemo, stop } = installation
   try {
-    await stages.run('demo', () => startDemo().then(() => ONE_PASSED))
+    if (stages.wants('demo', 'api', 'browser')) await stages.require('demo', () => startDemo().then(() => ONE_PASSED))
     for (const project of ['api', 'browser']) await stages.run(project, () => vitest(setting, project, { env }))
     await stages.run('long', () => vitest(setting, 'long', { env, minutes: 40 }))
   }

@@ -2,7 +2,7 @@ import { spawnSync } from 'node:child_process'
 import { mkdtempSync, readdirSync, rmSync, writeFileSync } from 'node:fs'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
-import { afterEach, beforeEach, describe, expect, it } from 'vitest'
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import { alone, tryLock } from '../../../scripts/locks.mjs'
 
 describe('locks', () => {
@@ -11,8 +11,12 @@ describe('locks', () => {
   beforeEach(() => {
     folder = mkdtempSync(join(tmpdir(), 'stipule-locks-'))
     file = join(folder, 'lock')
+    vi.spyOn(process.stderr, 'write').mockReturnValue(true)
   })
-  afterEach(() => rmSync(folder, { recursive: true }))
+  afterEach(() => {
+    vi.restoreAllMocks()
+    rmSync(folder, { recursive: true })
+  })
 
   it('are held by one process until it releases them', () => {
     const lock = tryLock(file)

@@ -6,12 +6,14 @@ import { makeDataDir, makePassword, makeSecrets } from '../../../scripts/secrets
 import { readMigrationConfig } from '../../../server/config'
 
 describe('secrets of an installation', () => {
+  let parent: string
   let folder: string
   beforeEach(() => {
-    folder = join(mkdtempSync(join(tmpdir(), 'stipule-secrets-')), 'data')
+    parent = mkdtempSync(join(tmpdir(), 'stipule-secrets-'))
+    folder = join(parent, 'data')
     makeDataDir(folder)
   })
-  afterEach(() => rmSync(folder, { recursive: true }))
+  afterEach(() => rmSync(parent, { recursive: true }))
   const modeOf = (name: string) => (statSync(join(folder, name)).mode & 0o777).toString(8)
 
   it('are those that the server reads, and nobody else may', () => {

@@ -1,4 +1,4 @@
-import { describe, expect, it } from 'vitest'
+import { afterEach, beforeEach, describe, expect, it, vi } from 'vitest'
 import { ONE_PASSED } from '../../../scripts/counts.mjs'
 import { Refusal } from '../../../scripts/say.mjs'
 import { chosenStages, Stages } from '../../../scripts/stages.mjs'
@@ -19,6 +19,9 @@ describe('chosenStages', () => {
 })
 
 describe('Stages', () => {
+  beforeEach(() => void vi.spyOn(process.stderr, 'write').mockReturnValue(true))
+  afterEach(() => vi.restoreAllMocks())
+
   const stages = (signal = new AbortController().signal) => new Stages(new Set(['one', 'two']), signal)
 
   it('runs what is wanted, and goes on after one that throws', async () => {
