@@ -111,6 +111,7 @@ async function serve(database, { port, demo, signal }) {
     say(`\nStipule is ready: ${servers.url}`)
     if (demo) sayAccounts()
     else sayFirstLink(migration)
+    if (installation.smtpPort !== null && !demo) say('\nMail stays in this installation, where each person can read their own; STIPULE_SMTP_URL names a server that delivers it.')
     say('\nCtrl-C stops everything that was started.')
     return await serveUntilEnd(signal, [servers.ended, database.ended])
   }
